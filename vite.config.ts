@@ -1,0 +1,37 @@
+import { defineConfig } from "vitest/config";
+import react from "@vitejs/plugin-react";
+import tailwindcss from "@tailwindcss/vite";
+
+/**
+ * Two builds from one file: the browser's (`vite build` -> dist/client) and the server's (`vite build --ssr` ->
+ * dist/server, one entry for each process or command). Tests run on vitest with the same aliases (package.json#imports).
+ */
+export default defineConfig(({ isSsrBuild }) => ({
+  plugins: isSsrBuild ? [] : [react(), tailwindcss()],
+  build: isSsrBuild
+    ? {
+        outDir: "dist/server",
+        target: "node20",
+        minify: false,
+        sourcemap: true,
+        copyPublicDir: false,
+        rollupOptions: {
+          input: {
+            main: "server/main.ts",
+            worker: "server/compute/worker.ts",
+            check: "server/check.ts",
+            migrate: "server/database/migrate-command.ts",
+          },
+          output: { entryFileNames: "[name].js", chunkFileNames: "chunks/[name]-[hash].js" },
+        },
+      }
+    : { outDir: "dist/client", sourcemap: false, target: "es2022" },
+  server: { host: "127.0.0.1" },
+  test: {
+    include: ["tests/**/*.test.ts", "tests/**/*.test.tsx"],
+    testTimeout: 30_000,
+    hookTimeout: 60_000,
+    pool: "forks",
+    maxWorkers: 2,
+  },
+}));
