@@ -1,0 +1,117 @@
+import type { Vec2 } from "../frames.ts";
+import type { Piece } from "../geometry/piece.ts";
+import { pieceSection } from "../geometry/section.ts";
+import type { Space } from "../layout/schema.ts";
+import { freeArea, type ScanRegion } from "./free-area.ts";
+import { integrate } from "./integrate.ts";
+import { insetStretches, overlapStretches } from "./stretches.ts";
+
+const EVERYWHERE = 1e7;
+/** Flattening of round sections, mm; the area lost is below 0.02 % of a round part's own. */
+const SECTION_TOLERANCE = 0.02;
+
+/** Litres of a space: the outlines alone, and what wall gap and parts leave. */
+export interface SpaceVolume {
+  readonly grossLitres: number;
+  readonly freeLitres: number;
+}
+
+/**
+ * Volume inside a space's outlines less `wallGap` and less every piece grown by `partGap`: integrated from sections square to x, whose areas
+ * are exact for flat faces and flattened within 0.02 mm for round ones. The growth is a true 3D one (a ball about every surface point).
+ *
+ * @param space outlines in the car frame, mm
+ * @param obstacles pieces in the car frame, mm, as drawn (no movement, no tolerance)
+ * @returns litres; accuracy about 1e-4 of the gross volume (tests: closed forms and an independent solid library)
+ */
+export function measureSpace(space: Space, obstacles: readonly Piece[]): SpaceVolume {
+  const extent = spaceExtent(space);
+  if (!extent) return { grossLitres: 0, freeLitres: 0 };
+  const [from, to] = extent;
+  const outlineBreaks = [...(space.top ?? []), ...(space.side ?? [])].map((p) => p[0]);
+  const gross = integrate((x) => freeArea(regionAt(space, x, 0), []), from, to, outlineBreaks);
+
+  const near = obstacles
+    .map((piece) => ({ ...piece, radius: piece.radius + space.partGap }))
+    .map((piece) => ({ piece, box: boxOf(piece) }))
+    .filter(({ box }) => box.high[0] > from && box.low[0] < to);
+  const breaks = [...outlineBreaks];
+  if (space.wallGap > 0) for (const x of outlineBreaks) breaks.push(x - space.wallGap, x + space.wallGap);
+  for (const { piece, box } of near) {
+    breaks.push(box.low[0], box.high[0]);
+    // flat faces grown by the gap end abruptly: their corners' stations are where the section's area bends
+    if (piece.points.length <= 16) for (const p of piece.points) breaks.push(p[0] - piece.radius, p[0], p[0] + piece.radius);
+  }
+  const free = integrate(
+    (x) => {
+      const region = regionAt(space, x, space.wallGap);
+      if (!(region.to > region.from)) return 0;
+      const cuts: Vec2[][] = [];
+      for (const { piece, box } of near) {
+        if (x <= box.low[0] || x >= box.high[0] || box.high[1] <= region.from || box.low[1] >= region.to) continue;
+        const cut = pieceSection(piece, "x", x, SECTION_TOLERANCE);
+        if (cut.length >= 3) cuts.push(cut);
+      }
+      return freeArea(region, cuts);
+    },
+    from, to, breaks,
+  );
+  return { grossLitres: gross / 1e6, freeLitres: Math.min(free, gross) / 1e6 };
+}
+
+/** Reach of a space along x, common to its outlines; null where they do not overlap. */
+function spaceExtent(space: Space): [number, number] | null {
+  let from = -EVERYWHERE;
+  let to = EVERYWHERE;
+  for (const outline of [space.top, space.side]) {
+    if (!outline) continue;
+    const xs = outline.map((p) => p[0]);
+    from = Math.max(from, Math.min(...xs));
+    to = Math.min(to, Math.max(...xs));
+  }
+  return from > -EVERYWHERE && to > from ? [from, to] : null;
+}
+
+/** The space's section square to x: y by scan, z in stretches. Needs two outlines, which the document's invariants see to. */
+function regionAt(space: Space, x: number, gap: number): ScanRegion {
+  const across = space.top ? insetStretches(space.top, x, gap) : [-EVERYWHERE, EVERYWHERE];
+  const up = space.side ? insetStretches(space.side, x, gap) : [-EVERYWHERE, EVERYWHERE];
+  const rear = space.rear;
+  const rearBreaks: number[] = [];
+  let rearFrom = -EVERYWHERE;
+  let rearTo = EVERYWHERE;
+  if (rear) {
+    const ys = rear.map((p) => p[0]);
+    rearFrom = Math.min(...ys);
+    rearTo = Math.max(...ys);
+    for (const y of ys) rearBreaks.push(y, y - gap, y + gap);
+    if (gap > 0) for (let i = 1; i < 64; i++) rearBreaks.push(rearFrom + ((rearTo - rearFrom) * i) / 64);
+  }
+  const from = Math.max(across[0] ?? 0, rearFrom);
+  const to = Math.min(across[across.length - 1] ?? 0, rearTo);
+  const stretchesAt = (y: number, side: 1 | -1) => {
+    const within = y + side * 1e-9;
+    for (let i = 0; i + 1 < across.length; i += 2) {
+      if (within >= across[i]! && within <= across[i + 1]!) return rear ? overlapStretches(up, insetStretches(rear, within, gap)) : up;
+    }
+    return [];
+  };
+  return { from, to, breaks: [...across, ...rearBreaks], stretchesAt };
+}
+
+function boxOf(piece: Piece): { low: [number, number, number]; high: [number, number, number] } {
+  const low: [number, number, number] = [Infinity, Infinity, Infinity];
+  const high: [number, number, number] = [-Infinity, -Infinity, -Infinity];
+  for (let axis = 0 as 0 | 1 | 2; axis < 3; axis++) {
+    for (const p of piece.points) {
+      low[axis] = Math.min(low[axis], p[axis]! - piece.radius);
+      high[axis] = Math.max(high[axis], p[axis]! + piece.radius);
+    }
+    for (const d of piece.discs) {
+      const reach = Math.hypot(d.u[axis]!, d.v[axis]!) + piece.radius;
+      low[axis] = Math.min(low[axis], d.centre[axis]! - reach);
+      high[axis] = Math.max(high[axis], d.centre[axis]! + reach);
+    }
+  }
+  return { low, high };
+}
