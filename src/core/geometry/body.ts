@@ -1,4 +1,5 @@
 import { IDENTITY, type Disc, type Piece, type Pose } from "./piece.ts";
+import type { Facets } from "./facets.ts";
 import type { Vec3 } from "../frames.ts";
 
 /**
@@ -40,6 +41,10 @@ export interface Body {
   readonly leafOf: Int32Array;
   /** World box of each node, grown by the ball radius: low x, y, z, high x, y, z. */
   readonly boxes: Float64Array;
+  /** 1 for a right circular cylinder. */
+  readonly circular: Uint8Array;
+  /** Facets of a piece's core, local, made when its depth is first asked for; null where it has none. */
+  readonly facets: (Facets | null | undefined)[];
   pose: Pose;
 }
 
@@ -60,32 +65,27 @@ function extentOf(points: readonly Vec3[]): number {
 /** Centre and half edges of the eight corners of a parallelepiped, in any order; undefined for any other eight points. */
 function boxOf(points: readonly Vec3[]): Vec3[] | undefined {
   if (points.length !== 8) return undefined;
-  const slack = RECOGNISED * extentOf(points);
+  const slack = 4 * RECOGNISED * extentOf(points);
   const origin = points[0]!;
   const edges = points.slice(1).map((p) => minus(p, origin));
-  const has = (x: number, y: number, z: number): boolean => edges.some((e) => near(e, [x, y, z], 4 * slack));
   for (let i = 0; i < 5; i++) {
     for (let j = i + 1; j < 6; j++) {
       for (let k = j + 1; k < 7; k++) {
         const [a, b, c] = [edges[i]!, edges[j]!, edges[k]!];
-        if (
-          has(a[0] + b[0], a[1] + b[1], a[2] + b[2]) &&
-          has(a[0] + c[0], a[1] + c[1], a[2] + c[2]) &&
-          has(b[0] + c[0], b[1] + c[1], b[2] + c[2]) &&
-          has(a[0] + b[0] + c[0], a[1] + b[1] + c[1], a[2] + b[2] + c[2])
-        ) {
-          const volume = Math.abs(
-            a[0] * (b[1] * c[2] - b[2] * c[1]) + a[1] * (b[2] * c[0] - b[0] * c[2]) + a[2] * (b[0] * c[1] - b[1] * c[0]),
-          );
-          if (volume === 0) continue;
-          const half = (e: Vec3): Vec3 => [e[0] / 2, e[1] / 2, e[2] / 2];
-          const centre: Vec3 = [
-            origin[0] + (a[0] + b[0] + c[0]) / 2,
-            origin[1] + (a[1] + b[1] + c[1]) / 2,
-            origin[2] + (a[2] + b[2] + c[2]) / 2,
-          ];
-          return [centre, half(a), half(b), half(c)];
-        }
+        const volume = Math.abs(
+          a[0] * (b[1] * c[2] - b[2] * c[1]) + a[1] * (b[2] * c[0] - b[0] * c[2]) + a[2] * (b[0] * c[1] - b[1] * c[0]),
+        );
+        if (!(volume > 1e-6 * Math.sqrt(squared(a) * squared(b) * squared(c)))) continue;
+        const sums = [1, 2, 3, 4, 5, 6, 7].map((bits): Vec3 => {
+          const [p, q, r] = [bits & 1, (bits >> 1) & 1, bits >> 2];
+          return [p * a[0] + q * b[0] + r * c[0], p * a[1] + q * b[1] + r * c[1], p * a[2] + q * b[2] + r * c[2]];
+        });
+        // Every corner is such a sum and every such sum is a corner.
+        if (!edges.every((e) => sums.some((s) => near(e, s, slack)))) continue;
+        if (!sums.every((s) => edges.some((e) => near(e, s, slack)))) continue;
+        const half = (e: Vec3): Vec3 => [e[0] / 2, e[1] / 2, e[2] / 2];
+        const all = sums[6]!;
+        return [[origin[0] + all[0] / 2, origin[1] + all[1] / 2, origin[2] + all[2] / 2], half(a), half(b), half(c)];
       }
     }
   }
@@ -115,6 +115,19 @@ function roundOf(discs: readonly Disc[]): Vec3[] | undefined {
   ];
   const half = minus(b.centre, a.centre);
   return [middle, [half[0] / 2, half[1] / 2, half[2] / 2], a.u, a.v];
+}
+
+function isRightCircular([axis, u, v]: readonly Vec3[]): boolean {
+  const dot = (a: Vec3, b: Vec3): number => a[0] * b[0] + a[1] * b[1] + a[2] * b[2];
+  const r = squared(u!);
+  const h = Math.sqrt(squared(axis!) * r);
+  return (
+    Math.abs(squared(v!) - r) <= 1e-13 * r &&
+    Math.abs(dot(u!, v!)) <= 1e-13 * r &&
+    h > 0 &&
+    Math.abs(dot(axis!, u!)) <= 1e-13 * h &&
+    Math.abs(dot(axis!, v!)) <= 1e-13 * h
+  );
 }
 
 interface Compiled {
@@ -183,6 +196,8 @@ export function buildBody(pieces: readonly Piece[]): Body {
     leafPiece: new Int32Array(nodes).fill(-1),
     leafOf: new Int32Array(count),
     boxes: new Float64Array(6 * nodes),
+    circular: Uint8Array.from(compiled, (c) => (c.core === CORE_ROUND && isRightCircular(c.vectors) ? 1 : 0)),
+    facets: new Array<Facets | null | undefined>(count).fill(undefined),
     pose: IDENTITY,
   };
   let at = 0;

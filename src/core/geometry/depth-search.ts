@@ -12,10 +12,15 @@ import { supportPoint } from "./support.ts";
  * has its kink, so it is tried as a direction: flat facets are met exactly.
  */
 
-/** mm: the search ends when no direction can be better by more than this. */
-const CERTAIN = 1e-6;
+/**
+ * mm: the search ends when no direction can be better by more than this; where many directions are as good (a valley: two
+ * cones on one axis), the wish is lowered as the work grows, and the local descent at the end makes up for it.
+ */
+const CERTAIN = 1e-9;
+const CERTAIN_ENOUGH = 1e-6;
+const CERTAIN_AT_LEAST = 1e-4;
 /** Expansions (four triangles each) before the search gives up its certainty. */
-const MOST_EXPANSIONS = 4000;
+const MOST_EXPANSIONS = 3000;
 
 const VERTICES = 3 * MOST_EXPANSIONS + 6;
 const TRIANGLES = 4 * MOST_EXPANSIONS + 8;
@@ -229,9 +234,38 @@ function boundTriangle(
       if (least > bound) bound = least;
     }
   }
-  const sign = mx * (N[vi]! + N[vj]! + N[vk]!) + my * (N[vi + 1]! + N[vj + 1]! + N[vk + 1]!) + mz * (N[vi + 2]! + N[vj + 2]! + N[vk + 2]!) < 0 ? -1 : 1;
-  tryDirection(a, pieceA, b, pieceB, travel, (sign * mx) / length, (sign * my) / length, (sign * mz) / length);
+  tryKink(a, pieceA, b, pieceB, travel, vi, vj, vk);
   return bound;
+}
+
+/** Tries the normal of the plane through three support points, on the side of their directions. */
+function tryKink(
+  a: Body,
+  pieceA: number,
+  b: Body,
+  pieceB: number,
+  travel: Float64Array | null,
+  vi: number,
+  vj: number,
+  vk: number,
+): void {
+  const ux = P[vj]! - P[vi]!;
+  const uy = P[vj + 1]! - P[vi + 1]!;
+  const uz = P[vj + 2]! - P[vi + 2]!;
+  const wx = P[vk]! - P[vi]!;
+  const wy = P[vk + 1]! - P[vi + 1]!;
+  const wz = P[vk + 2]! - P[vi + 2]!;
+  const x = uy * wz - uz * wy;
+  const y = uz * wx - ux * wz;
+  const z = ux * wy - uy * wx;
+  const length = Math.sqrt(x * x + y * y + z * z);
+  if (!(length > 0)) return;
+  const side =
+    x * (N[vi]! + N[vj]! + N[vk]!) +
+    y * (N[vi + 1]! + N[vj + 1]! + N[vk + 1]!) +
+    z * (N[vi + 2]! + N[vj + 2]! + N[vk + 2]!);
+  const sign = side < 0 ? -1 : 1;
+  tryDirection(a, pieceA, b, pieceB, travel, (sign * x) / length, (sign * y) / length, (sign * z) / length);
 }
 
 function pushTriangle(t: number): void {
@@ -290,7 +324,7 @@ function polish(a: Body, pieceA: number, b: Body, pieceB: number, travel: Float6
         const d = s * (i === 0 ? 0 : i === 1 ? 0.8660254037844386 : -0.8660254037844386);
         addVertex(a, pieceA, b, pieceB, travel, x + c * ux + d * vx, y + c * uy + d * vy, z + c * uz + d * vz);
       }
-      boundTriangle(a, pieceA, b, pieceB, travel, 0, 1, 2);
+      tryKink(a, pieceA, b, pieceB, travel, 0, 3, 6);
     }
     if (BEST[0]! < before) size *= 4;
     SCRATCH[0] = SCRATCH[0]! + 1;
@@ -330,7 +364,8 @@ export function searchDepth(
   while (heap > 0) {
     if (BEST[0]! <= enough) return BEST[0]!;
     const t = popTriangle();
-    if (BOUND[t]! >= BEST[0]! - CERTAIN) break;
+    const open = BEST[0]! - BOUND[t]!;
+    if (open <= (expansions < 300 ? CERTAIN : expansions < 900 ? CERTAIN_ENOUGH : CERTAIN_AT_LEAST)) break;
     if (++expansions > MOST_EXPANSIONS) {
       searchWasCertain = false;
       break;
@@ -346,11 +381,13 @@ export function searchDepth(
     addTriangle(a, pieceA, b, pieceB, travel, ki, jk, k);
     addTriangle(a, pieceA, b, pieceB, travel, ij, jk, ki);
   }
+  expansionsOfLast = expansions;
   SCRATCH[0] = 0;
   polish(a, pieceA, b, pieceB, travel);
   return BEST[0]!;
 }
 
+export let expansionsOfLast = 0;
 /** Whether the last search ended because no direction can be better, rather than because its budget was spent. */
 export let searchWasCertain = true;
 

@@ -14,6 +14,8 @@ import { supportPoint } from "./support.ts";
 export const GAP_WANTED = 1e-8;
 /** mm: cores nearer than this are treated as touching. */
 export const TOUCHING = 1e-10;
+/** mm: under this, cores that no direction was seen to part count as touching. */
+const NOT_TOLD_APART = 1e-6;
 const MOST_STEPS = 200;
 
 /** Corners of the simplex (difference), and the points of either core they come from; three doubles each. */
@@ -216,6 +218,7 @@ export function coreDistance(
   }
   let size = 0;
   let best = Infinity;
+  let proven = 0;
   for (let step = 0; step < MOST_STEPS; step++) {
     const slot = size;
     const o = 3 * slot;
@@ -234,7 +237,8 @@ export function coreDistance(
     const lower = (vx * wx + vy * wy + vz * wz) / length;
     if (lower > enough) return Infinity;
     if (size > 0) {
-      if (best - lower <= GAP_WANTED) break;
+      if (lower > proven) proven = lower;
+      if (lower > 0 && best - lower <= GAP_WANTED) break;
       if (nameA >= 0 && nameB >= 0) {
         let again = false;
         for (let i = 0; i < size; i++) if (NAMES[2 * i] === nameA && NAMES[2 * i + 1] === nameB) again = true;
@@ -287,5 +291,7 @@ export function coreDistance(
     vz = V[2]!;
     square = LEAST[0]!;
   }
+  // Nothing parts them, though no common point was met: rounding lies between. Only where they touch.
+  if (proven === 0 && best < NOT_TOLD_APART) return -1;
   return best;
 }

@@ -1,7 +1,8 @@
 import type { Body } from "./body.ts";
 import { buildBody, setPose } from "./body.ts";
 import { coreDistance, closestA, closestB } from "./gjk.ts";
-import { deepestA, deepestB, searchDepth, searchWasCertain, separatingNormal, startSearch } from "./depth-search.ts";
+import { coreDepth, depthIsCertain } from "./depth.ts";
+import { separatingNormal } from "./depth-search.ts";
 import type { Piece, Pose, TravelBox } from "./piece.ts";
 
 /** What measuring two bodies gives. Made once and overwritten by every call. */
@@ -48,6 +49,10 @@ export function createPairCache(slots: number): PairCache {
 const SLACK = 1e-9;
 
 const TRAVEL = new Float64Array(6);
+const PARTED = new Float64Array(6);
+/** Direction in which b leaves a most shortly, of the best pair so far. */
+const WAY_OUT = new Float64Array(3);
+let coresOverlap = false;
 let stack = new Int32Array(2 * 1024);
 let stackBound = new Float64Array(1024);
 
@@ -105,6 +110,7 @@ function measurePair(
     out.pieceA = i;
     out.pieceB = j;
     out.depthIsEstimate = false;
+    coresOverlap = false;
     for (let k = 0; k < 3; k++) {
       const n = (closestB[k]! - closestA[k]!) / core;
       out.pointA[k] = closestA[k]! + ra * n;
@@ -112,20 +118,35 @@ function measurePair(
     }
     return distance;
   }
-  startSearch();
-  const width = searchDepth(a, i, b, j, travel, -best - ra - rb - SLACK);
-  const distance = Math.min(0, -Math.max(0, width) - ra - rb);
+  const width = Math.max(0, coreDepth(a, i, b, j, travel, -best - ra - rb - SLACK));
+  // No minus zero where they only touch.
+  const distance = 0 - width - ra - rb;
   if (distance > best || (distance === best && out.pieceA >= 0 && !earlier(i, j, out))) return best;
-  out.distance = distance === 0 ? 0 : distance;
+  out.distance = distance;
   out.pieceA = i;
   out.pieceB = j;
-  out.depthIsEstimate = !searchWasCertain;
+  out.depthIsEstimate = !depthIsCertain;
+  WAY_OUT.set(separatingNormal);
+  coresOverlap = true;
+  return distance;
+}
+
+/** Where the overlap of the governing pieces is met: b parted along the least way out by one millimetre more, then put back. */
+function writeOverlapPoints(a: Body, b: Body, travel: Float64Array | null, out: Measure): void {
+  const ra = a.radius[out.pieceA]!;
+  const rb = b.radius[out.pieceB]!;
+  const way = -out.distance - ra - rb + 1;
   for (let k = 0; k < 3; k++) {
-    const n = separatingNormal[k]!;
-    out.pointA[k] = deepestA[k]! + ra * n;
-    out.pointB[k] = deepestB[k]! - rb * n;
+    const step = way * WAY_OUT[k]!;
+    PARTED[k] = (travel === null ? 0 : travel[k]!) + step;
+    PARTED[3 + k] = (travel === null ? 0 : travel[3 + k]!) + step;
   }
-  return out.distance;
+  coreDistance(a, out.pieceA, b, out.pieceB, PARTED, Infinity);
+  for (let k = 0; k < 3; k++) {
+    const n = WAY_OUT[k]!;
+    out.pointA[k] = closestA[k]! + ra * n;
+    out.pointB[k] = closestB[k]! - way * n - rb * n;
+  }
 }
 
 function earlier(i: number, j: number, out: Measure): boolean {
@@ -154,6 +175,7 @@ export function measureBodies(
   out.pieceB = -1;
   out.overlapping = false;
   out.depthIsEstimate = false;
+  coresOverlap = false;
   let best = cutoff;
   let doneA = -1;
   let doneB = -1;
@@ -209,6 +231,7 @@ export function measureBodies(
     cache.pieceB[slot] = out.pieceB;
   }
   if (out.pieceA < 0) return;
+  if (coresOverlap) writeOverlapPoints(a, b, move, out);
   out.overlapping = out.distance <= 0;
   if (out.overlapping && out.distance < 0 && (a.count > 1 || b.count > 1)) out.depthIsEstimate = true;
 }

@@ -1,0 +1,363 @@
+import { CORE_BOX, CORE_POINTS, CORE_ROUND, type Body } from "./body.ts";
+import { leastWidth, searchDepth, searchWasCertain, startSearch, tryDirection } from "./depth-search.ts";
+import { facetsOf, type Facets } from "./facets.ts";
+
+/**
+ * Overlap depth of two convex cores: the least translation that parts them, by the shortest exact way the pair allows.
+ * Boxes, segments and points (and the travel box) are sums of segments, whose facets are square to two of them each.
+ * Polytopes: facet normals, and crossed edges whose arcs of normals cross. Cylinders with one axis, segments along it and
+ * points: side and ends. Anything else: the certain search of depth-search.ts.
+ */
+
+/** Half edges of both and of the travel, centres' difference: the zonotope A - B - T. */
+const GENERATORS = new Float64Array(27);
+const CENTRE = new Float64Array(3);
+
+/** Whether the last depth is exact (to rounding, or certain to 1e-6 mm by search). */
+export let depthIsCertain = true;
+
+const isZonotope = (body: Body, piece: number): boolean =>
+  body.core[piece] === CORE_BOX || (body.core[piece] === CORE_POINTS && body.corners[piece]! <= 2);
+
+/**
+ * Least width of A - B - T over all directions, mm, or any width not above `enough` as soon as one is found. Negative
+ * when a direction parts the cores after all. The direction is in `separatingNormal`.
+ */
+export function coreDepth(
+  a: Body,
+  pieceA: number,
+  b: Body,
+  pieceB: number,
+  travel: Float64Array | null,
+  enough: number,
+): number {
+  depthIsCertain = true;
+  startSearch();
+  if (isZonotope(a, pieceA) && isZonotope(b, pieceB)) return zonotopeDepth(a, pieceA, b, pieceB, travel);
+  if (travel === null && parallelRounds(a, pieceA, b, pieceB)) return leastWidth();
+  tryAxes(a, pieceA, b, pieceB, travel);
+  if (leastWidth() <= enough) return leastWidth();
+  if (a.discs[pieceA] === 0 && b.discs[pieceB] === 0) {
+    const facetsA = facetsOfAny(a, pieceA);
+    const facetsB = facetsOfAny(b, pieceB);
+    if (facetsA && facetsB) return polytopeDepth(a, pieceA, facetsA, b, pieceB, facetsB, travel, enough);
+  }
+  const width = searchDepth(a, pieceA, b, pieceB, travel, enough);
+  depthIsCertain = searchWasCertain;
+  return width;
+}
+
+/** Adds a piece's half edges; returns how many there are then. `sign` places its centre. */
+function addGenerators(body: Body, piece: number, sign: number, count: number): number {
+  const { world } = body;
+  const s = body.start[piece]!;
+  if (body.core[piece] === CORE_BOX) {
+    for (let k = 0; k < 3; k++) CENTRE[k] = CENTRE[k]! + sign * world[s + k]!;
+    for (let k = 0; k < 9; k++) GENERATORS[3 * count + k] = world[s + 3 + k]!;
+    return count + 3;
+  }
+  if (body.corners[piece] === 1) {
+    for (let k = 0; k < 3; k++) CENTRE[k] = CENTRE[k]! + sign * world[s + k]!;
+    return count;
+  }
+  for (let k = 0; k < 3; k++) {
+    const p = world[s + k]!;
+    const q = world[s + 3 + k]!;
+    CENTRE[k] = CENTRE[k]! + (sign * (p + q)) / 2;
+    GENERATORS[3 * count + k] = (q - p) / 2;
+  }
+  return count + 1;
+}
+
+function zonotopeDepth(a: Body, pieceA: number, b: Body, pieceB: number, travel: Float64Array | null): number {
+  CENTRE.fill(0);
+  let count = addGenerators(a, pieceA, 1, 0);
+  count = addGenerators(b, pieceB, -1, count);
+  if (travel !== null) {
+    for (let k = 0; k < 3; k++) {
+      CENTRE[k] = CENTRE[k]! - (travel[k]! + travel[3 + k]!) / 2;
+      const half = (travel[3 + k]! - travel[k]!) / 2;
+      if (half === 0) continue;
+      GENERATORS.fill(0, 3 * count, 3 * count + 3);
+      GENERATORS[3 * count + k] = half;
+      count++;
+    }
+  }
+  let best = Infinity;
+  let bx = 1;
+  let by = 0;
+  let bz = 0;
+  for (let i = 0; i < count; i++) {
+    const gx = GENERATORS[3 * i]!;
+    const gy = GENERATORS[3 * i + 1]!;
+    const gz = GENERATORS[3 * i + 2]!;
+    for (let j = i + 1; j < count; j++) {
+      const hx = GENERATORS[3 * j]!;
+      const hy = GENERATORS[3 * j + 1]!;
+      const hz = GENERATORS[3 * j + 2]!;
+      let x = gy * hz - gz * hy;
+      let y = gz * hx - gx * hz;
+      let z = gx * hy - gy * hx;
+      const square = x * x + y * y + z * z;
+      if (!(square > 1e-24 * (gx * gx + gy * gy + gz * gz) * (hx * hx + hy * hy + hz * hz))) continue;
+      const length = Math.sqrt(square);
+      if (!(length > 0)) continue;
+      x /= length;
+      y /= length;
+      z /= length;
+      let reach = 0;
+      for (let k = 0; k < 3 * count; k += 3) {
+        reach += Math.abs(GENERATORS[k]! * x + GENERATORS[k + 1]! * y + GENERATORS[k + 2]! * z);
+      }
+      const along = CENTRE[0]! * x + CENTRE[1]! * y + CENTRE[2]! * z;
+      const width = reach - Math.abs(along);
+      if (width < best) {
+        const sign = along > 0 ? -1 : 1;
+        best = width;
+        bx = sign * x;
+        by = sign * y;
+        bz = sign * z;
+      }
+    }
+  }
+  if (best === Infinity) {
+    // Fewer than two directions: a line or a point, which any direction square to it (and to the offset) leaves at once.
+    const gx = count > 0 ? GENERATORS[0]! : CENTRE[0]!;
+    const gy = count > 0 ? GENERATORS[1]! : CENTRE[1]!;
+    const gz = count > 0 ? GENERATORS[2]! : CENTRE[2]!;
+    if (gx * gx + gy * gy + gz * gz > 0) {
+      const [mx, my, mz] = [Math.abs(gx), Math.abs(gy), Math.abs(gz)];
+      const x = mx <= my && mx <= mz ? 0 : my <= mz ? -gz : gy;
+      const y = mx <= my && mx <= mz ? gz : my <= mz ? 0 : -gx;
+      const z = mx <= my && mx <= mz ? -gy : my <= mz ? gx : 0;
+      const length = Math.sqrt(x * x + y * y + z * z);
+      bx = x / length;
+      by = y / length;
+      bz = z / length;
+    }
+  }
+  return tryDirection(a, pieceA, b, pieceB, travel, bx, by, bz);
+}
+
+/** Axis (half length times direction) and radius of a cylinder, a segment or a point; false for anything else. */
+const AXES = new Float64Array(14);
+function readAxis(body: Body, piece: number, at: number): boolean {
+  const { world } = body;
+  const s = body.start[piece]!;
+  if (body.core[piece] === CORE_ROUND) {
+    if (body.circular[piece] === 0) return false;
+    for (let k = 0; k < 6; k++) AXES[at + k] = world[s + k]!;
+    AXES[at + 6] = Math.sqrt(world[s + 6]! ** 2 + world[s + 7]! ** 2 + world[s + 8]! ** 2);
+    return true;
+  }
+  if (body.core[piece] !== CORE_POINTS || body.corners[piece]! > 2) return false;
+  const q = body.corners[piece] === 2 ? s + 3 : s;
+  for (let k = 0; k < 3; k++) {
+    AXES[at + k] = (world[s + k]! + world[q + k]!) / 2;
+    AXES[at + 3 + k] = (world[q + k]! - world[s + k]!) / 2;
+  }
+  AXES[at + 6] = 0;
+  return true;
+}
+
+/**
+ * Cylinders, segments and points whose axes have one direction: A - B is a cylinder, left through an end or the side,
+ * whichever is nearer. Tries those directions and says whether the pair was such.
+ */
+function parallelRounds(a: Body, pieceA: number, b: Body, pieceB: number): boolean {
+  if (!readAxis(a, pieceA, 0) || !readAxis(b, pieceB, 7)) return false;
+  const halfA = Math.sqrt(AXES[3]! ** 2 + AXES[4]! ** 2 + AXES[5]! ** 2);
+  const halfB = Math.sqrt(AXES[10]! ** 2 + AXES[11]! ** 2 + AXES[12]! ** 2);
+  const o = halfA >= halfB ? 3 : 10;
+  const half = Math.max(halfA, halfB);
+  if (half === 0) return false;
+  const x = AXES[o]! / half;
+  const y = AXES[o + 1]! / half;
+  const z = AXES[o + 2]! / half;
+  const other = o === 3 ? 10 : 3;
+  const sx = y * AXES[other + 2]! - z * AXES[other + 1]!;
+  const sy = z * AXES[other]! - x * AXES[other + 2]!;
+  const sz = x * AXES[other + 1]! - y * AXES[other]!;
+  if (sx * sx + sy * sy + sz * sz > 1e-24 * half * half) return false;
+  const cx = AXES[0]! - AXES[7]!;
+  const cy = AXES[1]! - AXES[8]!;
+  const cz = AXES[2]! - AXES[9]!;
+  const along = cx * x + cy * y + cz * z;
+  const end = along > 0 ? -1 : 1;
+  tryDirection(a, pieceA, b, pieceB, null, end * x, end * y, end * z);
+  let rx = cx - along * x;
+  let ry = cy - along * y;
+  let rz = cz - along * z;
+  let off = Math.sqrt(rx * rx + ry * ry + rz * rz);
+  if (!(off > 1e-9)) {
+    // On one axis: every way out through the side is as long.
+    const [mx, my, mz] = [Math.abs(x), Math.abs(y), Math.abs(z)];
+    rx = mx <= my && mx <= mz ? 0 : my <= mz ? -z : y;
+    ry = mx <= my && mx <= mz ? z : my <= mz ? 0 : -x;
+    rz = mx <= my && mx <= mz ? -y : my <= mz ? x : 0;
+    off = Math.sqrt(rx * rx + ry * ry + rz * rz);
+  }
+  tryDirection(a, pieceA, b, pieceB, null, -rx / off, -ry / off, -rz / off);
+  return true;
+}
+
+/** Directions that are often the answer and cost next to nothing: the car's axes, and the axes the pieces have. */
+function tryAxes(a: Body, pieceA: number, b: Body, pieceB: number, travel: Float64Array | null): void {
+  for (let sign = 1; sign >= -1; sign -= 2) {
+    tryDirection(a, pieceA, b, pieceB, travel, sign, 0, 0);
+    tryDirection(a, pieceA, b, pieceB, travel, 0, sign, 0);
+    tryDirection(a, pieceA, b, pieceB, travel, 0, 0, sign);
+  }
+  for (let side = 0; side < 2; side++) {
+    const body = side === 0 ? a : b;
+    const piece = side === 0 ? pieceA : pieceB;
+    if (body.core[piece] !== CORE_ROUND) continue;
+    const u = body.start[piece]! + 6;
+    const { world } = body;
+    // Square to the end discs.
+    const x = world[u + 1]! * world[u + 5]! - world[u + 2]! * world[u + 4]!;
+    const y = world[u + 2]! * world[u + 3]! - world[u]! * world[u + 5]!;
+    const z = world[u]! * world[u + 4]! - world[u + 1]! * world[u + 3]!;
+    const length = Math.sqrt(x * x + y * y + z * z);
+    if (!(length > 0)) continue;
+    tryDirection(a, pieceA, b, pieceB, travel, x / length, y / length, z / length);
+    tryDirection(a, pieceA, b, pieceB, travel, -x / length, -y / length, -z / length);
+  }
+}
+
+function facetsOfAny(body: Body, piece: number): Facets | null {
+  if (body.core[piece] !== CORE_BOX) return facetsOf(body, piece);
+  return (body.facets[piece] ??= boxFacets(body.local, body.start[piece]! + 3));
+}
+
+function boxFacets(local: Float64Array, at: number): Facets {
+  const h = [0, 1, 2].map((k) => [local[at + 3 * k]!, local[at + 3 * k + 1]!, local[at + 3 * k + 2]!] as const);
+  const unit = (v: readonly number[]): number[] => v.map((c) => c / Math.hypot(...v));
+  const faces = [0, 1, 2].map((k) => {
+    const [p, q] = [h[(k + 1) % 3]!, h[(k + 2) % 3]!];
+    const n = unit([p[1] * q[2] - p[2] * q[1], p[2] * q[0] - p[0] * q[2], p[0] * q[1] - p[1] * q[0]]);
+    const outward = n[0]! * h[k]![0] + n[1]! * h[k]![1] + n[2]! * h[k]![2] > 0;
+    return outward ? n : n.map((c) => -c);
+  });
+  const negated = (n: number[]): number[] => n.map((c) => -c);
+  const edges = [0, 1, 2].flatMap((k) => {
+    const [p, q] = [faces[(k + 1) % 3]!, faces[(k + 2) % 3]!];
+    return [p, negated(p)].flatMap((m) => [q, negated(q)].flatMap((n) => [...unit(h[k]!), ...m, ...n]));
+  });
+  return { normals: Float64Array.from(faces.flatMap((n) => [...n, ...negated(n)])), edges: Float64Array.from(edges) };
+}
+
+let turnedA = new Float64Array(9 * 64);
+let turnedB = new Float64Array(9 * 64);
+
+function turn(rotation: readonly number[], from: Float64Array, to: Float64Array, sign: number): void {
+  const [m0, m1, m2, m3, m4, m5, m6, m7, m8] = rotation as [number, number, number, number, number, number, number, number, number];
+  for (let i = 0; i < from.length; i += 3) {
+    const x = from[i]! * sign;
+    const y = from[i + 1]! * sign;
+    const z = from[i + 2]! * sign;
+    to[i] = m0 * x + m1 * y + m2 * z;
+    to[i + 1] = m3 * x + m4 * y + m5 * z;
+    to[i + 2] = m6 * x + m7 * y + m8 * z;
+  }
+}
+
+/** Arcs of normals within this much (sine) of crossing are taken to cross: a direction too many does no harm. */
+const NEARLY = 1e-9;
+
+function polytopeDepth(
+  a: Body,
+  pieceA: number,
+  facetsA: Facets,
+  b: Body,
+  pieceB: number,
+  facetsB: Facets,
+  travel: Float64Array | null,
+  enough: number,
+): number {
+  const need = Math.max(facetsA.edges.length, facetsB.edges.length, facetsA.normals.length, facetsB.normals.length);
+  if (turnedA.length < need) {
+    turnedA = new Float64Array(need);
+    turnedB = new Float64Array(need);
+  }
+  turn(a.pose.rotation, facetsA.normals, turnedA, 1);
+  for (let i = 0; i < facetsA.normals.length; i += 3) {
+    tryDirection(a, pieceA, b, pieceB, travel, turnedA[i]!, turnedA[i + 1]!, turnedA[i + 2]!);
+  }
+  turn(b.pose.rotation, facetsB.normals, turnedB, -1);
+  for (let i = 0; i < facetsB.normals.length; i += 3) {
+    tryDirection(a, pieceA, b, pieceB, travel, turnedB[i]!, turnedB[i + 1]!, turnedB[i + 2]!);
+  }
+  if (leastWidth() <= enough) return leastWidth();
+  turn(a.pose.rotation, facetsA.edges, turnedA, 1);
+  // Normals of B count for -B; its edge directions may have either sign.
+  turn(b.pose.rotation, facetsB.edges, turnedB, -1);
+  if (travel !== null) {
+    crossWithTravel(a, pieceA, b, pieceB, travel, turnedA, facetsA.edges.length);
+    crossWithTravel(a, pieceA, b, pieceB, travel, turnedB, facetsB.edges.length);
+  }
+  for (let i = 0; i < facetsA.edges.length; i += 9) {
+    const ex = turnedA[i]!;
+    const ey = turnedA[i + 1]!;
+    const ez = turnedA[i + 2]!;
+    const n1x = turnedA[i + 3]!;
+    const n1y = turnedA[i + 4]!;
+    const n1z = turnedA[i + 5]!;
+    const n2x = turnedA[i + 6]!;
+    const n2y = turnedA[i + 7]!;
+    const n2z = turnedA[i + 8]!;
+    const looseA = n1x === 0 && n1y === 0 && n1z === 0;
+    for (let j = 0; j < facetsB.edges.length; j += 9) {
+      const fx = turnedB[j]!;
+      const fy = turnedB[j + 1]!;
+      const fz = turnedB[j + 2]!;
+      const m1x = turnedB[j + 3]!;
+      const m1y = turnedB[j + 4]!;
+      const m1z = turnedB[j + 5]!;
+      const m2x = turnedB[j + 6]!;
+      const m2y = turnedB[j + 7]!;
+      const m2z = turnedB[j + 8]!;
+      const looseB = m1x === 0 && m1y === 0 && m1z === 0;
+      // The arc n1 n2 lies square to e, the arc m1 m2 square to f: they can only meet along e x f.
+      if (!looseA && (n1x * fx + n1y * fy + n1z * fz) * (n2x * fx + n2y * fy + n2z * fz) > NEARLY) continue;
+      if (!looseB && (m1x * ex + m1y * ey + m1z * ez) * (m2x * ex + m2y * ey + m2z * ez) > NEARLY) continue;
+      const x = ey * fz - ez * fy;
+      const y = ez * fx - ex * fz;
+      const z = ex * fy - ey * fx;
+      const length = Math.sqrt(x * x + y * y + z * z);
+      if (!(length > 1e-12)) continue;
+      const sideA = looseA ? 0 : x * (n1x + n2x) + y * (n1y + n2y) + z * (n1z + n2z);
+      const sideB = looseB ? 0 : x * (m1x + m2x) + y * (m1y + m2y) + z * (m1z + m2z);
+      if (sideA * sideB < -NEARLY) continue;
+      const sign = sideA + sideB;
+      if (sign >= -NEARLY) tryDirection(a, pieceA, b, pieceB, travel, x / length, y / length, z / length);
+      if (sign <= NEARLY) tryDirection(a, pieceA, b, pieceB, travel, -x / length, -y / length, -z / length);
+    }
+    if (leastWidth() <= enough) return leastWidth();
+  }
+  return leastWidth();
+}
+
+/** The directions square to an edge and to one edge of the travel box. */
+function crossWithTravel(
+  a: Body,
+  pieceA: number,
+  b: Body,
+  pieceB: number,
+  travel: Float64Array,
+  edges: Float64Array,
+  count: number,
+): void {
+  for (let i = 0; i < count; i += 9) {
+    for (let k = 0; k < 3; k++) {
+      if (travel[k] === travel[3 + k]) continue;
+      const x = k === 0 ? 0 : k === 1 ? -edges[i + 2]! : edges[i + 1]!;
+      const y = k === 0 ? edges[i + 2]! : k === 1 ? 0 : -edges[i]!;
+      const z = k === 0 ? -edges[i + 1]! : k === 1 ? edges[i]! : 0;
+      const length = Math.sqrt(x * x + y * y + z * z);
+      if (!(length > 1e-12)) continue;
+      tryDirection(a, pieceA, b, pieceB, travel, x / length, y / length, z / length);
+      tryDirection(a, pieceA, b, pieceB, travel, -x / length, -y / length, -z / length);
+    }
+  }
+}

@@ -1,0 +1,169 @@
+import fc from "fast-check";
+import { describe, expect, it } from "vitest";
+import { measurePieces } from "#core/geometry/measure.ts";
+import type { Piece, Pose } from "#core/geometry/piece.ts";
+import {
+  add,
+  anyPiece,
+  compose,
+  dot,
+  leastWidthBySphere,
+  norm,
+  place,
+  polytopes,
+  poses,
+  rounds,
+  sphereOf,
+  sub,
+  supportHeight,
+  times,
+  travels,
+  unit,
+  vec,
+  widthOf,
+  type Box,
+} from "./kernel-pieces.ts";
+
+const SEED = 20260701;
+const runs = (numRuns: number, shift = 0): fc.Parameters<unknown> => ({ seed: SEED + shift, numRuns });
+const pair = fc.tuple(anyPiece, poses(400), anyPiece, poses(400), travels);
+const close = fc.tuple(anyPiece, poses(60), anyPiece, poses(60), travels);
+const DIRECTIONS = sphereOf(400);
+
+/** Apart: both points lie in their bodies and the slab between them holds neither body; together that proves the distance. */
+function proveApart(a: Piece, poseA: Pose, b: Piece, poseB: Pose, travel: Box | null, slack: number): void {
+  const m = measurePieces(a, poseA, b, poseB, travel);
+  if (m.overlapping) return;
+  const pA = vec(m.pointA);
+  const pB = vec(m.pointB);
+  expect(Math.abs(norm(sub(pB, pA)) - m.distance)).toBeLessThan(1e-9);
+  // Nearer than this the direction of two points says too little.
+  if (m.distance < 1e-3) return;
+  const n = unit(sub(pB, pA));
+  // Dual: no point of A is farther along n than pA, none of the moved B nearer than pB.
+  expect(-widthOf(a, poseA, b, poseB, travel, n)).toBeGreaterThan(m.distance - slack * (1 + 1 / m.distance));
+  // Primal: the points are inside, as far as 400 directions can tell.
+  for (const d of DIRECTIONS) {
+    expect(dot(pA, d)).toBeLessThan(supportHeight(a, poseA, d) + 1e-8);
+    const moved = travel ? d.reduce((sum, c, k) => sum + Math.max(c * travel.low[k]!, c * travel.high[k]!), 0) : 0;
+    expect(dot(pB, d)).toBeLessThan(supportHeight(b, poseB, d) + moved + 1e-8);
+  }
+}
+
+describe("measurePieces", () => {
+  it(`finds points that prove the distance of any two pieces, to 1e-7 mm (seed ${SEED})`, () => {
+    fc.assert(
+      fc.property(pair, ([a, poseA, b, poseB, travel]) => proveApart(a, poseA, b, poseB, travel, 1e-7)),
+      runs(1500),
+    );
+  });
+
+  it(`parts any two overlapping pieces by no more than a fine sphere of directions finds (seed ${SEED + 1})`, () => {
+    let seen = 0;
+    fc.assert(
+      fc.property(close, ([a, poseA, b, poseB, travel]) => {
+        const m = measurePieces(a, poseA, b, poseB, travel);
+        if (!m.overlapping) return;
+        seen++;
+        const least = leastWidthBySphere(a, poseA, b, poseB, travel);
+        expect(-m.distance).toBeLessThan(Math.max(0, least) + 1e-6);
+        // And really parts them: the width along the direction it names is the depth.
+        if (m.distance < -1e-6) {
+          const n = unit(sub(vec(m.pointA), vec(m.pointB)));
+          expect(Math.abs(widthOf(a, poseA, b, poseB, travel, n) + m.distance)).toBeLessThan(1e-7);
+        }
+      }),
+      runs(400, 1),
+    );
+    expect(seen).toBeGreaterThan(200);
+  });
+
+  it(`gives the same distance with a and b exchanged, to 1e-9 mm (seed ${SEED + 2})`, () => {
+    fc.assert(
+      fc.property(fc.oneof(pair, close), ([a, poseA, b, poseB, travel]) => {
+        const back = travel && { low: times(-1, travel.high), high: times(-1, travel.low) };
+        const m = measurePieces(a, poseA, b, poseB, travel);
+        const w = measurePieces(b, poseB, a, poseA, back);
+        expect(Math.abs(m.distance - w.distance)).toBeLessThan(1e-9 + 1e-12 * Math.abs(m.distance));
+      }),
+      runs(1500, 2),
+    );
+  });
+
+  it(`does not change when both are moved and turned together, to 1e-8 mm (seed ${SEED + 3})`, () => {
+    fc.assert(
+      fc.property(fc.oneof(pair, close), poses(5000), ([a, poseA, b, poseB], motion) => {
+        const m = measurePieces(a, poseA, b, poseB);
+        const w = measurePieces(a, compose(motion, poseA), b, compose(motion, poseB));
+        expect(Math.abs(m.distance - w.distance)).toBeLessThan(1e-8);
+      }),
+      runs(1500, 3),
+    );
+  });
+
+  it(`never changes by more than b is moved (seed ${SEED + 4})`, () => {
+    fc.assert(
+      fc.property(fc.oneof(pair, close), poses(30), ([a, poseA, b, poseB, travel], shift) => {
+        const m = measurePieces(a, poseA, b, poseB, travel);
+        const w = measurePieces(a, poseA, b, { ...poseB, at: add(poseB.at, shift.at) }, travel);
+        expect(Math.abs(m.distance - w.distance)).toBeLessThan(norm(shift.at) + 1e-7);
+      }),
+      runs(1500, 4),
+    );
+  });
+
+  it(`never grows when b may move more (seed ${SEED + 5})`, () => {
+    fc.assert(
+      fc.property(fc.oneof(pair, close), ([a, poseA, b, poseB, travel]) => {
+        const still = measurePieces(a, poseA, b, poseB).distance;
+        const moving = measurePieces(a, poseA, b, poseB, travel).distance;
+        const more = travel && { low: times(1.5, travel.low), high: times(1.5, travel.high) };
+        expect(moving).toBeLessThan(still + 1e-7);
+        expect(measurePieces(a, poseA, b, poseB, more).distance).toBeLessThan(moving + 1e-7);
+      }),
+      runs(800, 5),
+    );
+  });
+
+  it(`scales with everything (seed ${SEED + 6})`, () => {
+    const larger = (p: Piece, s: number): Piece => ({
+      ...p,
+      points: p.points.map((q) => times(s, q)),
+      discs: p.discs.map((d) => ({ centre: times(s, d.centre), u: times(s, d.u), v: times(s, d.v) })),
+      radius: s * p.radius,
+    });
+    fc.assert(
+      fc.property(fc.oneof(pair, close), fc.double({ min: 0.01, max: 8, noNaN: true }), ([a, poseA, b, poseB], s) => {
+        const m = measurePieces(a, poseA, b, poseB).distance;
+        const w = measurePieces(
+          larger(a, s),
+          { ...poseA, at: times(s, poseA.at) },
+          larger(b, s),
+          { ...poseB, at: times(s, poseB.at) },
+        ).distance;
+        expect(Math.abs(w - s * m)).toBeLessThan(1e-7 * Math.max(1, s));
+      }),
+      runs(800, 6),
+    );
+  });
+
+  it(`is never positive for pieces that share a point (seed ${SEED + 7})`, () => {
+    fc.assert(
+      fc.property(fc.oneof(polytopes, rounds), poses(400), fc.oneof(polytopes, rounds), poses(1), fc.array(fc.double({ min: 0, max: 1, noNaN: true }), { minLength: 16, maxLength: 16 }), (a, poseA, b, poseB, mix) => {
+        // A point inside each: a random mean of its corners and disc centres. B is put so that the two coincide.
+        const inside = (p: Piece, offset: number) => {
+          const all = [...p.points, ...p.discs.map((d) => d.centre)].slice(0, 8);
+          const weights = all.map((_, i) => 0.01 + mix[offset + i]!);
+          const whole = weights.reduce((s, w) => s + w, 0);
+          return all.reduce((s, q, i) => add(s, times(weights[i]! / whole, q)), [0, 0, 0] as readonly [number, number, number]);
+        };
+        const target = place(poseA, inside(a, 0));
+        const from = place({ ...poseB, at: [0, 0, 0] }, inside(b, 8));
+        const m = measurePieces(a, poseA, b, { ...poseB, at: sub(target, from) });
+        expect(m.overlapping).toBe(true);
+        expect(m.distance).toBeLessThanOrEqual(0);
+      }),
+      runs(1500, 7),
+    );
+  });
+});
