@@ -39,10 +39,19 @@ export interface Body {
   /** Piece of a leaf. */
   readonly leafPiece: Int32Array;
   readonly leafOf: Int32Array;
+  /** Size of each node where the pieces were made, mm: the larger of two nodes is split first. */
+  readonly spread: Float64Array;
   /** World box of each node, grown by the ball radius: low x, y, z, high x, y, z. */
   readonly boxes: Float64Array;
   /** 1 for a right circular cylinder. */
   readonly circular: Uint8Array;
+  /**
+   * Where the spine of a round piece begins in `world`, -1 without one: points whose hull grown by `spineRadius` holds the
+   * piece, and whose surface is that of the piece between two end planes (a point and an outward normal each).
+   */
+  readonly spine: Int32Array;
+  readonly spinePoints: Int32Array;
+  readonly spineRadius: Float64Array;
   /** Facets of a piece's core, local, made when its depth is first asked for; null where it has none. */
   readonly facets: (Facets | null | undefined)[];
   pose: Pose;
@@ -130,12 +139,70 @@ function isRightCircular([axis, u, v]: readonly Vec3[]): boolean {
   );
 }
 
+interface Spine {
+  /** The spine's points, then a point of either end plane. */
+  points: Vec3[];
+  /** Outward normals of the end planes. */
+  normals: Vec3[];
+  radius: number;
+}
+
+/**
+ * The spine of round tubes and bars: discs of one radius seen along one axis, half of them (one or more) on either end
+ * plane. The discs may lean (mitred ends); the points are then moved out along the axis to where the longest side ends.
+ */
+function spineOf(piece: Piece): Spine | undefined {
+  const discs = piece.discs;
+  if (piece.points.length > 0 || discs.length < 2 || discs.length > 8 || discs.length % 2 === 1) return undefined;
+  const dot = (a: Vec3, b: Vec3): number => a[0] * b[0] + a[1] * b[1] + a[2] * b[2];
+  const cross = (a: Vec3, b: Vec3): Vec3 => [a[1] * b[2] - a[2] * b[1], a[2] * b[0] - a[0] * b[2], a[0] * b[1] - a[1] * b[0]];
+  const along = (a: Vec3, t: number, b: Vec3): Vec3 => [a[0] + t * b[0], a[1] + t * b[1], a[2] + t * b[2]];
+  const plane = cross(discs[0]!.u, discs[0]!.v);
+  if (squared(plane) === 0) return undefined;
+  // The discs of the first one's end plane, and the others.
+  const size = extentOf(discs.flatMap((d) => [d.centre, d.u, d.v]));
+  const ends: Disc[][] = [[], []];
+  const unit = along([0, 0, 0], 1 / Math.sqrt(squared(plane)), plane);
+  for (const d of discs) ends[Math.abs(dot(minus(d.centre, discs[0]!.centre), unit)) <= 1e-12 * size ? 0 : 1]!.push(d);
+  if (ends[0]!.length !== ends[1]!.length) return undefined;
+  // Each disc has its partner straight across; the axis leads from one to the other.
+  const far = ends[1]!;
+  const partner = far.find((f) => {
+    const step = minus(f.centre, discs[0]!.centre);
+    return ends[0]!.every((d) => far.some((g) => squared(cross(minus(g.centre, d.centre), step)) <= 1e-20 * squared(step) * size * size));
+  });
+  if (!partner) return undefined;
+  const whole = minus(partner.centre, discs[0]!.centre);
+  const axis = along([0, 0, 0], 1 / Math.sqrt(squared(whole)), whole);
+  let radius = 0;
+  const points: Vec3[] = [];
+  const normals: Vec3[] = [];
+  for (const [side, list] of ends.entries()) {
+    for (const d of list) {
+      const p = along(d.u, -dot(d.u, axis), axis);
+      const q = along(d.v, -dot(d.v, axis), axis);
+      const r = Math.sqrt(squared(p));
+      if (radius === 0) radius = r;
+      const slack = 1e-12 * radius;
+      if (r === 0 || Math.abs(r - radius) > slack || Math.abs(Math.sqrt(squared(q)) - radius) > slack) return undefined;
+      if (Math.abs(dot(p, q)) > slack * radius) return undefined;
+      const lean = Math.hypot(dot(d.u, axis), dot(d.v, axis));
+      points.push(along(d.centre, side === 0 ? -lean : lean, axis));
+    }
+    const n = cross(list[0]!.u, list[0]!.v);
+    const outward = (side === 0 ? -1 : 1) * Math.sign(dot(n, axis));
+    normals.push(along([0, 0, 0], outward / Math.sqrt(squared(n)), n));
+  }
+  return { points: [...points, ends[0]![0]!.centre, far[0]!.centre], normals, radius };
+}
+
 interface Compiled {
   core: number;
   placed: Vec3[];
   vectors: Vec3[];
   corners: number;
   discs: number;
+  spine?: Spine | undefined;
 }
 
 function compilePiece(piece: Piece): Compiled {
@@ -160,9 +227,11 @@ function compilePiece(piece: Piece): Compiled {
     }
     return { core: CORE_POINTS, placed: points, vectors: [], corners: points.length, discs: 0 };
   }
+  const spine = spineOf(piece);
   const round = points.length === 0 ? roundOf(discs) : undefined;
-  if (round) return { core: CORE_ROUND, placed: [round[0]!], vectors: round.slice(1), corners: 0, discs: 2 };
+  if (round) return { core: CORE_ROUND, placed: [round[0]!], vectors: round.slice(1), corners: 0, discs: 2, spine };
   return {
+    spine,
     core: CORE_DISCS,
     placed: [...points, ...discs.map((d) => d.centre)],
     vectors: discs.flatMap((d) => [d.u, d.v]),
@@ -179,7 +248,10 @@ export function buildBody(pieces: readonly Piece[]): Body {
   if (pieces.length === 0) throw new RangeError("a body needs at least one piece");
   const count = pieces.length;
   const compiled = pieces.map(compilePiece);
-  const triples = compiled.reduce((n, c) => n + c.placed.length + c.vectors.length, 0);
+  const triples = compiled.reduce(
+    (n, c) => n + c.placed.length + c.vectors.length + (c.spine ? c.spine.points.length + 2 : 0),
+    0,
+  );
   const nodes = 2 * count - 1;
   const body: Body = {
     count,
@@ -195,8 +267,12 @@ export function buildBody(pieces: readonly Piece[]): Body {
     second: new Int32Array(nodes),
     leafPiece: new Int32Array(nodes).fill(-1),
     leafOf: new Int32Array(count),
+    spread: new Float64Array(nodes),
     boxes: new Float64Array(6 * nodes),
     circular: Uint8Array.from(compiled, (c) => (c.core === CORE_ROUND && isRightCircular(c.vectors) ? 1 : 0)),
+    spine: new Int32Array(count).fill(-1),
+    spinePoints: Int32Array.from(compiled, (c) => (c.spine ? c.spine.points.length - 2 : 0)),
+    spineRadius: Float64Array.from(compiled, (c) => c.spine?.radius ?? 0),
     facets: new Array<Facets | null | undefined>(count).fill(undefined),
     pose: IDENTITY,
   };
@@ -208,6 +284,13 @@ export function buildBody(pieces: readonly Piece[]): Body {
       body.local.set(v, at);
       at += 3;
     }
+    if (!c.spine) return;
+    body.spine[i] = at;
+    body.placed.fill(1, at / 3, at / 3 + c.spine.points.length);
+    for (const v of [...c.spine.points, ...c.spine.normals]) {
+      body.local.set(v, at);
+      at += 3;
+    }
   });
   // Boxes of the pieces where they were made decide how the tree is split; any pose may use it.
   body.world.set(body.local);
@@ -215,6 +298,11 @@ export function buildBody(pieces: readonly Piece[]): Body {
   for (let i = 0; i < count; i++) pieceBox(body, i, boxes, 6 * i);
   growTree(body, boxes, Int32Array.from({ length: count }, (_, i) => i), 0, count, 0);
   setPose(body, IDENTITY);
+  for (let node = 0; node < nodes; node++) {
+    const o = 6 * node;
+    const size = [0, 1, 2].map((k) => body.boxes[o + 3 + k]! - body.boxes[o + k]!);
+    body.spread[node] = Math.hypot(...size);
+  }
   return body;
 }
 

@@ -9,6 +9,8 @@ export interface Facets {
    * All-zero normals: any direction square to the edge.
    */
   readonly edges: Float64Array;
+  /** One end of each edge. */
+  readonly ends: Float64Array;
 }
 
 /** Share of the size under which points coincide, and within which they lie on one plane. */
@@ -52,7 +54,12 @@ export function hullFacets(given: readonly P[]): Facets | null {
   const slack = FLAT * size;
   const normals: P[] = [];
   const edges: P[] = [];
-  const done = (): Facets => ({ normals: Float64Array.from(normals.flat()), edges: Float64Array.from(edges.flat()) });
+  const ends: P[] = [];
+  const done = (): Facets => ({
+    normals: Float64Array.from(normals.flat()),
+    edges: Float64Array.from(edges.flat()),
+    ends: Float64Array.from(ends.flat()),
+  });
   if (points.length === 1) return done();
   const farthest = (value: (p: P) => number): P => points.reduce((a, b) => (value(b) > value(a) ? b : a));
   const end = farthest((p) => length(sub(p, points[0]!)));
@@ -61,6 +68,7 @@ export function hullFacets(given: readonly P[]): Facets | null {
   const wide = farthest((p) => length(off(p)));
   if (length(off(wide)) <= slack) {
     edges.push(along, [0, 0, 0], [0, 0, 0]);
+    ends.push(end);
     return done();
   }
   const across = scale(1 / length(off(wide)), off(wide));
@@ -74,10 +82,11 @@ export function hullFacets(given: readonly P[]): Facets | null {
       const d = scale(1 / length(e), e);
       const out = cross(d, up);
       edges.push(d, up, out, d, out, scale(-1, up));
+      ends.push(points[i]!, points[i]!);
     });
     return done();
   }
-  return wrap(points, slack, normals, edges) ? done() : null;
+  return wrap(points, slack, normals, edges, ends) ? done() : null;
 }
 
 /** The corners of the convex hull of points on a plane, anticlockwise seen from its normal. */
@@ -134,7 +143,7 @@ function pivot(points: readonly P[], p: P, n: P, s: P, slack: number): P | null 
   return scale(1 / length(normal), normal);
 }
 
-function wrap(points: readonly P[], slack: number, normals: P[], edges: P[]): boolean {
+function wrap(points: readonly P[], slack: number, normals: P[], edges: P[], ends: P[]): boolean {
   // A direction in no special position to the axes or each other, so that one corner is foremost.
   const d: P = [0.5352331346596349, 0.6208609386262817, 0.5727622013463471];
   const start = points.reduce((a, b) => (dot(b, d) > dot(a, d) ? b : a));
@@ -188,6 +197,7 @@ function wrap(points: readonly P[], slack: number, normals: P[], edges: P[]): bo
     if (from < to) {
       const e = sub(points[to]!, points[from]!);
       edges.push(scale(1 / length(e), e), normal, normalOf.get(key(to, from))!);
+      ends.push(points[from]!);
     }
   }
   return true;

@@ -1,5 +1,5 @@
-import type { Body } from "./body.ts";
-import { supportPoint } from "./support.ts";
+import { CORE_POINTS, type Body } from "./body.ts";
+import { supportAt, supportPoint } from "./support.ts";
 
 /**
  * Distance of two convex cores by descent on their Minkowski difference (Gilbert, Johnson, Keerthi 1988), in doubles, with
@@ -11,20 +11,22 @@ import { supportPoint } from "./support.ts";
  */
 
 /** mm: the iteration ends when the distance is known this well. */
-export const GAP_WANTED = 1e-8;
+export const GAP_WANTED = 1e-9;
 /** mm: cores nearer than this are treated as touching. */
 export const TOUCHING = 1e-10;
 /** mm: under this, cores that no direction was seen to part count as touching. */
 const NOT_TOLD_APART = 1e-6;
 const MOST_STEPS = 200;
 
-/** Corners of the simplex (difference), and the points of either core they come from; three doubles each. */
+/** Corners of the simplex (difference), and the points of the first core they come from; three doubles each. */
 const W = new Float64Array(12);
 const A = new Float64Array(12);
-const B = new Float64Array(12);
-const NAMES = new Int32Array(8);
+const B = new Float64Array(3);
+/** Which corners of the two cores made the simplex's corner: one number, -1 where a round edge did. */
+const NAMES = new Float64Array(4);
 const WEIGHT = new Float64Array(4);
 /** Slots of the simplex found nearest by the last reduction, their weights, and its point. */
+export const STATS = new Float64Array(8);
 const KEEP = new Int32Array(4);
 const KEPT_WEIGHT = new Float64Array(4);
 const V = new Float64Array(3);
@@ -177,19 +179,21 @@ function tryTetrahedron(): boolean {
 }
 
 function copySlot(from: number, to: number): void {
-  for (let k = 0; k < 3; k++) {
-    W[3 * to + k] = W[3 * from + k]!;
-    A[3 * to + k] = A[3 * from + k]!;
-    B[3 * to + k] = B[3 * from + k]!;
-  }
-  NAMES[2 * to] = NAMES[2 * from]!;
-  NAMES[2 * to + 1] = NAMES[2 * from + 1]!;
+  const f = 3 * from;
+  const t = 3 * to;
+  W[t] = W[f]!;
+  W[t + 1] = W[f + 1]!;
+  W[t + 2] = W[f + 2]!;
+  A[t] = A[f]!;
+  A[t + 1] = A[f + 1]!;
+  A[t + 2] = A[f + 2]!;
+  NAMES[to] = NAMES[from]!;
 }
 
 /**
  * Distance of the cores of two pieces, mm; -1 when they overlap or touch; Infinity as soon as it is certain to exceed `enough`.
  * `travel` holds low x, y, z, high x, y, z of the second core's freedom. Writes `closestA` and `closestB` when the answer
- * is a distance. Accuracy: 1e-8 mm or, where rounding ends the descent first, the best point reached.
+ * is a distance. With `spineA`, `spineB` the spine of a round piece stands for its core. Accuracy: 1e-8 mm or, where rounding ends the descent first, the best point reached.
  */
 export function coreDistance(
   a: Body,
@@ -198,7 +202,10 @@ export function coreDistance(
   pieceB: number,
   travel: Float64Array | null,
   enough: number,
+  spineA = false,
+  spineB = false,
 ): number {
+  STATS[0]!++;
   const boxA = 6 * a.leafOf[pieceA]!;
   const boxB = 6 * b.leafOf[pieceB]!;
   const p = a.boxes;
@@ -216,82 +223,123 @@ export function coreDistance(
     vx = 1;
     square = 1;
   }
+  const worldA = a.world;
+  const startA = spineA ? a.spine[pieceA]! : a.start[pieceA]!;
+  const coreA = spineA ? CORE_POINTS : a.core[pieceA]!;
+  const cornersA = spineA ? a.spinePoints[pieceA]! : a.corners[pieceA]!;
+  const discsA = a.discs[pieceA]!;
+  const worldB = b.world;
+  const startB = spineB ? b.spine[pieceB]! : b.start[pieceB]!;
+  const coreB = spineB ? CORE_POINTS : b.core[pieceB]!;
+  const cornersB = spineB ? b.spinePoints[pieceB]! : b.corners[pieceB]!;
+  const discsB = b.discs[pieceB]!;
+  // Corners of the simplex kept so far; the new one is put after them.
   let size = 0;
-  let best = Infinity;
+  let best = Math.sqrt(square);
   let proven = 0;
   for (let step = 0; step < MOST_STEPS; step++) {
-    const slot = size;
-    const o = 3 * slot;
-    const nameA = supportPoint(a, pieceA, -vx, -vy, -vz, A, o);
-    let nameB = supportPoint(b, pieceB, vx, vy, vz, B, o);
+    STATS[1]!++;
+    const o = 3 * size;
+    const nameA = supportAt(worldA, startA, coreA, cornersA, discsA, -vx, -vy, -vz, A, o);
+    const nameB = supportAt(worldB, startB, coreB, cornersB, discsB, vx, vy, vz, B, 0);
+    let wx = A[o]! - B[0]!;
+    let wy = A[o + 1]! - B[1]!;
+    let wz = A[o + 2]! - B[2]!;
+    let name = nameA >= 0 && nameB >= 0 ? nameA * 1048576 + nameB : -1;
     if (travel !== null) {
-      B[o] = B[o]! + (vx < 0 ? travel[0]! : travel[3]!);
-      B[o + 1] = B[o + 1]! + (vy < 0 ? travel[1]! : travel[4]!);
-      B[o + 2] = B[o + 2]! + (vz < 0 ? travel[2]! : travel[5]!);
-      if (nameB >= 0) nameB = 8 * nameB + (vx < 0 ? 0 : 1) + (vy < 0 ? 0 : 2) + (vz < 0 ? 0 : 4);
+      wx -= vx < 0 ? travel[0]! : travel[3]!;
+      wy -= vy < 0 ? travel[1]! : travel[4]!;
+      wz -= vz < 0 ? travel[2]! : travel[5]!;
+      if (name >= 0) name = 8 * name + (vx < 0 ? 0 : 1) + (vy < 0 ? 0 : 2) + (vz < 0 ? 0 : 4);
     }
-    const wx = A[o]! - B[o]!;
-    const wy = A[o + 1]! - B[o + 1]!;
-    const wz = A[o + 2]! - B[o + 2]!;
-    const length = Math.sqrt(square);
-    const lower = (vx * wx + vy * wy + vz * wz) / length;
+    const lower = (vx * wx + vy * wy + vz * wz) / best;
     if (lower > enough) return Infinity;
-    if (size > 0) {
-      if (lower > proven) proven = lower;
-      if (lower > 0 && best - lower <= GAP_WANTED) break;
-      if (nameA >= 0 && nameB >= 0) {
-        let again = false;
-        for (let i = 0; i < size; i++) if (NAMES[2 * i] === nameA && NAMES[2 * i + 1] === nameB) again = true;
-        if (again) break;
-      }
-    }
     W[o] = wx;
     W[o + 1] = wy;
     W[o + 2] = wz;
-    NAMES[2 * slot] = nameA;
-    NAMES[2 * slot + 1] = nameB;
-    size++;
+    NAMES[size] = name;
+    if (size === 0) {
+      square = wx * wx + wy * wy + wz * wz;
+      if (square <= TOUCHING * TOUCHING) return -1;
+      best = Math.sqrt(square);
+      vx = wx;
+      vy = wy;
+      vz = wz;
+      WEIGHT[0] = 1;
+      size = 1;
+      continue;
+    }
+    if (lower > 0) {
+      if (best - lower <= GAP_WANTED) {
+        proven = lower;
+        break;
+      }
+      if (lower > proven) proven = lower;
+    }
+    if (name >= 0) {
+      if (NAMES[0] === name) break;
+      if (size > 1 && NAMES[1] === name) break;
+      if (size > 2 && NAMES[2] === name) break;
+    }
     LEAST[0] = Infinity;
-    if (size === 1) tryPoint(0);
-    else if (size === 2) trySegment(0, 1);
-    else if (size === 3) tryTriangle(0, 1, 2);
+    if (size === 1) trySegment(0, 1);
+    else if (size === 2) tryTriangle(0, 1, 2);
     else if (tryTetrahedron()) return -1;
-    const now = Math.sqrt(LEAST[0]!);
-    if (now <= TOUCHING) return -1;
+    const least = LEAST[0]!;
+    if (least <= TOUCHING * TOUCHING) return -1;
+    const now = Math.sqrt(least);
     // No progress left in doubles: what was kept before this step is the answer.
     if (!(now < best)) break;
     best = now;
-    let x = 0;
-    let y = 0;
-    let z = 0;
-    let bx = 0;
-    let by = 0;
-    let bz = 0;
-    for (let i = 0; i < kept; i++) {
+    size = kept;
+    for (let i = 0; i < size; i++) {
       const from = KEEP[i]!;
       if (from !== i) copySlot(from, i);
-      const weight = KEPT_WEIGHT[i]!;
-      WEIGHT[i] = weight;
-      x += weight * A[3 * i]!;
-      y += weight * A[3 * i + 1]!;
-      z += weight * A[3 * i + 2]!;
-      bx += weight * B[3 * i]!;
-      by += weight * B[3 * i + 1]!;
-      bz += weight * B[3 * i + 2]!;
+      WEIGHT[i] = KEPT_WEIGHT[i]!;
     }
-    size = kept;
-    closestA[0] = x;
-    closestA[1] = y;
-    closestA[2] = z;
-    closestB[0] = bx;
-    closestB[1] = by;
-    closestB[2] = bz;
     vx = V[0]!;
     vy = V[1]!;
     vz = V[2]!;
-    square = LEAST[0]!;
   }
   // Nothing parts them, though no common point was met: rounding lies between. Only where they touch.
   if (proven === 0 && best < NOT_TOLD_APART) return -1;
+  let x = 0;
+  let y = 0;
+  let z = 0;
+  for (let i = 0; i < size; i++) {
+    const weight = WEIGHT[i]!;
+    x += weight * A[3 * i]!;
+    y += weight * A[3 * i + 1]!;
+    z += weight * A[3 * i + 2]!;
+  }
+  closestA[0] = x;
+  closestA[1] = y;
+  closestA[2] = z;
+  closestB[0] = x - vx;
+  closestB[1] = y - vy;
+  closestB[2] = z - vz;
   return best;
+}
+
+const SA = new Float64Array(3);
+const SB = new Float64Array(3);
+
+/** How far the cores are apart along v (from b to a), times the length of v: a lower bound of their distance; negative: not parted by it. */
+export function slabAlong(
+  a: Body,
+  pieceA: number,
+  b: Body,
+  pieceB: number,
+  travel: Float64Array | null,
+  vx: number,
+  vy: number,
+  vz: number,
+): number {
+  supportPoint(a, pieceA, -vx, -vy, -vz, SA, 0);
+  supportPoint(b, pieceB, vx, vy, vz, SB, 0);
+  let gap = (SA[0]! - SB[0]!) * vx + (SA[1]! - SB[1]!) * vy + (SA[2]! - SB[2]!) * vz;
+  if (travel !== null) {
+    gap -= vx * (vx < 0 ? travel[0]! : travel[3]!) + vy * (vy < 0 ? travel[1]! : travel[4]!) + vz * (vz < 0 ? travel[2]! : travel[5]!);
+  }
+  return gap;
 }

@@ -1,6 +1,7 @@
 import type { Body } from "./body.ts";
 import { buildBody, setPose } from "./body.ts";
-import { coreDistance, closestA, closestB } from "./gjk.ts";
+import { segmentSquare } from "./segments.ts";
+import { coreDistance, slabAlong, TOUCHING, STATS, closestA, closestB } from "./gjk.ts";
 import { coreDepth, depthIsCertain } from "./depth.ts";
 import { separatingNormal } from "./depth-search.ts";
 import type { Piece, Pose, TravelBox } from "./piece.ts";
@@ -68,25 +69,106 @@ function writeTravel(travel: TravelBox | null): Float64Array | null {
 }
 
 /**
- * Signed distance of the boxes of two nodes, a lower bound of that of anything in them: apart their distance, else minus
- * the least width of the overlap.
+ * How near anything in two boxes can be, as a key that grows with the distance: apart the square of the boxes' distance,
+ * else minus the least width of their overlap.
  */
-function boxBound(p: Float64Array, i: number, q: Float64Array, j: number, travel: Float64Array | null): number {
-  let x = Math.max(q[j]! - p[i + 3]!, p[i]! - q[j + 3]!);
-  let y = Math.max(q[j + 1]! - p[i + 4]!, p[i + 1]! - q[j + 4]!);
-  let z = Math.max(q[j + 2]! - p[i + 5]!, p[i + 2]! - q[j + 5]!);
-  if (travel !== null) {
-    x = Math.max(q[j]! + travel[0]! - p[i + 3]!, p[i]! - q[j + 3]! - travel[3]!);
-    y = Math.max(q[j + 1]! + travel[1]! - p[i + 4]!, p[i + 1]! - q[j + 4]! - travel[4]!);
-    z = Math.max(q[j + 2]! + travel[2]! - p[i + 5]!, p[i + 2]! - q[j + 5]! - travel[5]!);
+function boxKey(p: Float64Array, i: number, q: Float64Array, j: number): number {
+  const x = Math.max(q[j]! - p[i + 3]!, p[i]! - q[j + 3]!);
+  const y = Math.max(q[j + 1]! - p[i + 4]!, p[i + 1]! - q[j + 4]!);
+  const z = Math.max(q[j + 2]! - p[i + 5]!, p[i + 2]! - q[j + 5]!);
+  if (x > 0) return x * x + (y > 0 ? y * y : 0) + (z > 0 ? z * z : 0);
+  if (y > 0) return y * y + (z > 0 ? z * z : 0);
+  if (z > 0) return z * z;
+  return x > y ? (x > z ? x : z) : y > z ? y : z;
+}
+
+/** The same where the second box may move by `travel`. */
+function movingBoxKey(p: Float64Array, i: number, q: Float64Array, j: number, travel: Float64Array): number {
+  const x = Math.max(q[j]! + travel[0]! - p[i + 3]!, p[i]! - q[j + 3]! - travel[3]!);
+  const y = Math.max(q[j + 1]! + travel[1]! - p[i + 4]!, p[i + 1]! - q[j + 4]! - travel[4]!);
+  const z = Math.max(q[j + 2]! + travel[2]! - p[i + 5]!, p[i + 2]! - q[j + 5]! - travel[5]!);
+  if (x > 0) return x * x + (y > 0 ? y * y : 0) + (z > 0 ? z * z : 0);
+  if (y > 0) return y * y + (z > 0 ? z * z : 0);
+  if (z > 0) return z * z;
+  return x > y ? (x > z ? x : z) : y > z ? y : z;
+}
+
+/** Keys above this cannot beat `best`. */
+function limitOf(best: number): number {
+  const most = best + SLACK;
+  return most > 0 ? most * most : most;
+}
+
+/** mm: how far beyond its end plane a point of a round side still counts as on it. */
+const ON_SIDE = 1e-9;
+
+/** Whether the point of a spine grown by its radius along n, starting from x, y, z, is between the piece's end planes. */
+function onRoundSide(body: Body, piece: number, x: number, y: number, z: number): boolean {
+  const { world } = body;
+  const e = body.spine[piece]! + 3 * body.spinePoints[piece]!;
+  const low = (x - world[e]!) * world[e + 6]! + (y - world[e + 1]!) * world[e + 7]! + (z - world[e + 2]!) * world[e + 8]!;
+  if (low > ON_SIDE) return false;
+  const high =
+    (x - world[e + 3]!) * world[e + 9]! + (y - world[e + 4]!) * world[e + 10]! + (z - world[e + 5]!) * world[e + 11]!;
+  return high <= ON_SIDE;
+}
+
+/** A spine of two points or a core of one or two: the ends of a segment in `world`, or -1. */
+function segmentStart(body: Body, piece: number): number {
+  if (body.spine[piece]! >= 0) return body.spinePoints[piece] === 2 ? body.spine[piece]! : -1;
+  return body.corners[piece]! <= 2 && body.discs[piece] === 0 ? body.start[piece]! : -1;
+}
+
+/**
+ * Distance of the cores of two pieces, -1 when they overlap, Infinity when more than `enough`; closest points in
+ * `closestA`, `closestB`. Segments and the spines of round pieces have closed forms; a spine's answer counts where the
+ * point it gives is on the piece's round side, and bounds the distance from below everywhere.
+ */
+function pairDistance(a: Body, i: number, b: Body, j: number, travel: Float64Array | null, enough: number): number {
+  const spineA = a.spine[i]! >= 0;
+  const spineB = b.spine[j]! >= 0;
+  const ra = spineA ? a.spineRadius[i]! : 0;
+  const rb = spineB ? b.spineRadius[j]! : 0;
+  const within = enough + ra + rb;
+  const s = travel === null ? segmentStart(a, i) : -1;
+  const t = travel === null ? segmentStart(b, j) : -1;
+  let core: number;
+  if (s >= 0 && t >= 0) {
+    const sEnd = spineA || a.corners[i] === 2 ? s + 3 : s;
+    const tEnd = spineB || b.corners[j] === 2 ? t + 3 : t;
+    const square = segmentSquare(a.world, s, sEnd, b.world, t, tEnd);
+    if (square > within * within && within > 0) return Infinity;
+    core = square > TOUCHING * TOUCHING ? Math.sqrt(square) : -1;
+    if (!spineA && !spineB) return core;
+  } else {
+    if (!spineA && !spineB) return coreDistance(a, i, b, j, travel, enough);
+    core = coreDistance(a, i, b, j, travel, within, spineA, spineB);
+    if (core === Infinity) return core;
   }
-  const most = Math.max(x, y, z);
-  if (most <= 0) return most;
-  let square = 0;
-  if (x > 0) square += x * x;
-  if (y > 0) square += y * y;
-  if (z > 0) square += z * z;
-  return Math.sqrt(square);
+  const distance = core - ra - rb;
+  if (distance > TOUCHING) {
+    const nx = (closestB[0]! - closestA[0]!) / core;
+    const ny = (closestB[1]! - closestA[1]!) / core;
+    const nz = (closestB[2]! - closestA[2]!) / core;
+    const ax = closestA[0]! + ra * nx;
+    const ay = closestA[1]! + ra * ny;
+    const az = closestA[2]! + ra * nz;
+    if (!spineA || onRoundSide(a, i, ax, ay, az)) {
+      const bx = closestB[0]! - rb * nx;
+      const by = closestB[1]! - rb * ny;
+      const bz = closestB[2]! - rb * nz;
+      if (!spineB || (travel === null && onRoundSide(b, j, bx, by, bz))) {
+        closestA[0] = ax;
+        closestA[1] = ay;
+        closestA[2] = az;
+        closestB[0] = bx;
+        closestB[1] = by;
+        closestB[2] = bz;
+        return distance;
+      }
+    }
+  }
+  return coreDistance(a, i, b, j, travel, enough);
 }
 
 /** Measures one pair of pieces and keeps it in `out` when it is nearer (or as near, and earlier). */
@@ -101,7 +183,17 @@ function measurePair(
 ): number {
   const ra = a.radius[i]!;
   const rb = b.radius[j]!;
-  const core = coreDistance(a, i, b, j, travel, best + ra + rb + SLACK);
+  const enough = best + ra + rb + SLACK;
+  if (out.pieceA >= 0 && enough > 0 && (a.corners[i]! > 2 || b.corners[j]! > 2)) {
+    // The direction of the best pair so far, as a guess of what parts this one too: prunes, never decides.
+    const x = out.pointA[0]! - out.pointB[0]!;
+    const y = out.pointA[1]! - out.pointB[1]!;
+    const z = out.pointA[2]! - out.pointB[2]!;
+    const square = x * x + y * y + z * z;
+    const gap = slabAlong(a, i, b, j, travel, x, y, z);
+    if (gap > 0 && gap * gap > enough * enough * square) return best;
+  }
+  const core = pairDistance(a, i, b, j, travel, enough);
   if (core === Infinity) return best;
   if (core > 0) {
     const distance = core - ra - rb;
@@ -188,44 +280,7 @@ export function measureBodies(
       doneB = j;
     }
   }
-  const p = a.boxes;
-  const q = b.boxes;
-  let top = 0;
-  stack[0] = 0;
-  stack[1] = 0;
-  stackBound[0] = boxBound(p, 0, q, 0, move);
-  top = 1;
-  while (top > 0) {
-    top--;
-    if (stackBound[top]! > best + SLACK) continue;
-    const m = stack[2 * top]!;
-    const n = stack[2 * top + 1]!;
-    const mRight = a.second[m]!;
-    const nRight = b.second[n]!;
-    if (mRight === 0 && nRight === 0) {
-      const i = a.leafPiece[m]!;
-      const j = b.leafPiece[n]!;
-      if (i === doneA && j === doneB) continue;
-      best = measurePair(a, i, b, j, move, best, out);
-      continue;
-    }
-    if (top + 2 > stackBound.length) growStack();
-    const splitA = nRight === 0 || (mRight !== 0 && largest(p, 6 * m) >= largest(q, 6 * n));
-    const m1 = splitA ? m + 1 : m;
-    const m2 = splitA ? mRight : m;
-    const n1 = splitA ? n : n + 1;
-    const n2 = splitA ? n : nRight;
-    const first = boxBound(p, 6 * m1, q, 6 * n1, move);
-    const second = boxBound(p, 6 * m2, q, 6 * n2, move);
-    // The nearer one is taken next.
-    if (first <= second) {
-      if (second <= best + SLACK) top = push(top, m2, n2, second);
-      if (first <= best + SLACK) top = push(top, m1, n1, first);
-    } else {
-      if (first <= best + SLACK) top = push(top, m1, n1, first);
-      if (second <= best + SLACK) top = push(top, m2, n2, second);
-    }
-  }
+  best = searchTrees(a, b, move, best, out, doneA, doneB);
   if (cache !== undefined) {
     cache.pieceA[slot] = out.pieceA;
     cache.pieceB[slot] = out.pieceB;
@@ -236,11 +291,95 @@ export function measureBodies(
   if (out.overlapping && out.distance < 0 && (a.count > 1 || b.count > 1)) out.depthIsEstimate = true;
 }
 
-function push(top: number, m: number, n: number, bound: number): number {
-  stack[2 * top] = m;
-  stack[2 * top + 1] = n;
-  stackBound[top] = bound;
-  return top + 1;
+/** Branch and bound over the two trees, nearer boxes first. */
+function searchTrees(
+  a: Body,
+  b: Body,
+  travel: Float64Array | null,
+  bound: number,
+  out: Measure,
+  doneA: number,
+  doneB: number,
+): number {
+  const p = a.boxes;
+  const q = b.boxes;
+  const secondA = a.second;
+  const secondB = b.second;
+  let best = bound;
+  let limit = limitOf(best);
+  let m = 0;
+  let n = 0;
+  let top = 0;
+  const whole = travel === null ? boxKey(p, 0, q, 0) : movingBoxKey(p, 0, q, 0, travel);
+  if (whole > limit) return best;
+  for (;;) {
+    STATS[2]!++;
+    const mRight = secondA[m]!;
+    const nRight = secondB[n]!;
+    if (mRight === 0 && nRight === 0) {
+      const i = a.leafPiece[m]!;
+      const j = b.leafPiece[n]!;
+      if (i !== doneA || j !== doneB) {
+        best = measurePair(a, i, b, j, travel, best, out);
+        limit = limitOf(best);
+      }
+    } else {
+      let m1 = m;
+      let m2 = m;
+      let n1 = n;
+      let n2 = n;
+      if (nRight === 0 || (mRight !== 0 && a.spread[m]! >= b.spread[n]!)) {
+        m1 = m + 1;
+        m2 = mRight;
+      } else {
+        n1 = n + 1;
+        n2 = nRight;
+      }
+      let first: number;
+      let second: number;
+      if (travel === null) {
+        first = boxKey(p, 6 * m1, q, 6 * n1);
+        second = boxKey(p, 6 * m2, q, 6 * n2);
+      } else {
+        first = movingBoxKey(p, 6 * m1, q, 6 * n1, travel);
+        second = movingBoxKey(p, 6 * m2, q, 6 * n2, travel);
+      }
+      if (first <= limit) {
+        if (second <= limit) {
+          // The nearer one is taken at once, the other waits.
+          if (top === stackBound.length) growStack();
+          if (first <= second) {
+            stack[2 * top] = m2;
+            stack[2 * top + 1] = n2;
+            stackBound[top++] = second;
+            m = m1;
+            n = n1;
+          } else {
+            stack[2 * top] = m1;
+            stack[2 * top + 1] = n1;
+            stackBound[top++] = first;
+            m = m2;
+            n = n2;
+          }
+        } else {
+          m = m1;
+          n = n1;
+        }
+        continue;
+      }
+      if (second <= limit) {
+        m = m2;
+        n = n2;
+        continue;
+      }
+    }
+    do {
+      if (top === 0) return best;
+      top--;
+    } while (stackBound[top]! > limit);
+    m = stack[2 * top]!;
+    n = stack[2 * top + 1]!;
+  }
 }
 
 function growStack(): void {
@@ -250,10 +389,6 @@ function growStack(): void {
   const bounds = new Float64Array(2 * stackBound.length);
   bounds.set(stackBound);
   stackBound = bounds;
-}
-
-function largest(boxes: Float64Array, at: number): number {
-  return Math.max(boxes[at + 3]! - boxes[at]!, boxes[at + 4]! - boxes[at + 1]!, boxes[at + 5]! - boxes[at + 2]!);
 }
 
 /**

@@ -14,9 +14,33 @@ export function supportPoint(
   out: Float64Array,
   at: number,
 ): number {
-  const world = body.world;
-  const s = body.start[piece]!;
-  const core = body.core[piece]!;
+  return supportAt(
+    body.world,
+    body.start[piece]!,
+    body.core[piece]!,
+    body.corners[piece]!,
+    body.discs[piece]!,
+    dx,
+    dy,
+    dz,
+    out,
+    at,
+  );
+}
+
+/** The same, for a caller that asks one piece many times and has read its place and kind. */
+export function supportAt(
+  world: Float64Array,
+  s: number,
+  core: number,
+  corners: number,
+  discs: number,
+  dx: number,
+  dy: number,
+  dz: number,
+  out: Float64Array,
+  at: number,
+): number {
   if (core === CORE_BOX) {
     let x = world[s]!;
     let y = world[s + 1]!;
@@ -67,7 +91,7 @@ export function supportPoint(
     return name;
   }
   if (core === CORE_POINTS || core === CORE_PRISM) {
-    const n = body.corners[piece]!;
+    const n = corners;
     let best = s;
     let most = world[s]! * dx + world[s + 1]! * dy + world[s + 2]! * dz;
     const end = s + 3 * n;
@@ -94,7 +118,7 @@ export function supportPoint(
     out[at + 2] = world[best + 2]!;
     return best - s;
   }
-  if (core === CORE_DISCS) return supportOfDiscs(body, piece, dx, dy, dz, out, at);
+  if (core === CORE_DISCS) return supportOfDiscs(world, s, corners, discs, dx, dy, dz, out, at);
   // A cylinder: the end that faces the direction, and the farthest point of its rim.
   const hx = world[s + 3]!;
   const hy = world[s + 4]!;
@@ -120,18 +144,16 @@ export function supportPoint(
 }
 
 function supportOfDiscs(
-  body: Body,
-  piece: number,
+  world: Float64Array,
+  s: number,
+  n: number,
+  discs: number,
   dx: number,
   dy: number,
   dz: number,
   out: Float64Array,
   at: number,
 ): number {
-  const world = body.world;
-  const s = body.start[piece]!;
-  const n = body.corners[piece]!;
-  const discs = body.discs[piece]!;
   let most = -Infinity;
   let name = -1;
   for (let i = 0, p = s; i < n; i++, p += 3) {
