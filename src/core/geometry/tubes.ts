@@ -268,8 +268,12 @@ function bendStations(path: TubePath, bend: TubeBend): [Station[], Station[]] {
     bisect(chords, unit(sub(vertices[chords]!.at, vertices[chords - 1]!.at)), out);
   }
   const middle = angle / 2;
-  const first = vertices.filter((v) => v.angle <= middle + 1e-12).map((v) => ({ at: v.at, normal: v.normal, along: placeIn(r * (middle - v.angle)) }));
-  const second = vertices.filter((v) => v.angle >= middle - 1e-12).map((v) => ({ at: v.at, normal: v.normal, along: placeOut(r * (v.angle - middle)) }));
+  // the first vertex lies on the straight, tan(lead) beyond the tangent point: its place along is the straight's own
+  const place = (v: { angle: number }, index: number) =>
+    vertices.length > 1 && (index === 0 || index === vertices.length - 1) ? r * (middle - Math.tan(lead)) : r * Math.abs(middle - v.angle);
+  const placed = vertices.map((v, index) => ({ ...v, fromMiddle: place(v, index) }));
+  const first = placed.filter((v) => v.angle <= middle + 1e-12).map((v) => ({ at: v.at, normal: v.normal, along: placeIn(v.fromMiddle) }));
+  const second = placed.filter((v) => v.angle >= middle - 1e-12).map((v) => ({ at: v.at, normal: v.normal, along: placeOut(v.fromMiddle) }));
   if (!forwardIn) first.reverse();
   if (!forwardOut) second.reverse();
   return [first, second];
