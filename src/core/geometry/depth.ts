@@ -1,6 +1,9 @@
 import { CORE_BOX, CORE_POINTS, CORE_ROUND, type Body } from "./body.ts";
 import type { Vec3 } from "../frames.ts";
 import { leastWidth, searchDepth, searchWasCertain, startSearch, tryDirection } from "./depth-search.ts";
+import { discDepth } from "./depth-disc.ts";
+import { isZonotope, zonotopeDepth } from "./depth-zonotope.ts";
+import { supportPoint } from "./support.ts";
 import { facetsOf, type Facets } from "./facets.ts";
 
 /**
@@ -10,15 +13,8 @@ import { facetsOf, type Facets } from "./facets.ts";
  * points: side and ends. Anything else: the certain search of depth-search.ts.
  */
 
-/** Half edges of both and of the travel, centres' difference: the zonotope A - B - T. */
-const GENERATORS = new Float64Array(30);
-const CENTRE = new Float64Array(3);
-
 /** Whether the last depth is exact (to rounding, or certain to 1e-6 mm by search). */
 export let depthIsCertain = true;
-
-const isZonotope = (body: Body, piece: number): boolean =>
-  body.core[piece] === CORE_BOX || (body.core[piece] === CORE_POINTS && body.corners[piece]! <= 2);
 
 /**
  * Least width of A - B - T over all directions, mm, or any width not above `enough` as soon as one is found. Negative
@@ -36,10 +32,10 @@ export function coreDepth(
   startSearch();
   if (isZonotope(a, pieceA) && isZonotope(b, pieceB)) return zonotopeDepth(a, pieceA, b, pieceB, travel);
   if (travel === null && parallelRounds(a, pieceA, b, pieceB)) return leastWidth();
-  if (a.circular[pieceA] === 1 && isZonotope(b, pieceB)) return discDepth(a, pieceA, 1, b, pieceB, a, pieceA, b, pieceB, travel);
-  if (b.circular[pieceB] === 1 && isZonotope(a, pieceA)) return discDepth(b, pieceB, -1, a, pieceA, a, pieceA, b, pieceB, travel);
   tryAxes(a, pieceA, b, pieceB, travel);
   if (leastWidth() <= enough) return leastWidth();
+  if (a.circular[pieceA] === 1 && isZonotope(b, pieceB)) return discDepth(a, pieceA, 1, b, pieceB, a, pieceA, b, pieceB, travel);
+  if (b.circular[pieceB] === 1 && isZonotope(a, pieceA)) return discDepth(b, pieceB, -1, a, pieceA, a, pieceA, b, pieceB, travel);
   if (a.discs[pieceA] === 0 && b.discs[pieceB] === 0) {
     const facetsA = facetsOfAny(a, pieceA);
     const facetsB = facetsOfAny(b, pieceB);
@@ -48,288 +44,6 @@ export function coreDepth(
   const width = searchDepth(a, pieceA, b, pieceB, travel, enough);
   depthIsCertain = searchWasCertain;
   return width;
-}
-
-/** Adds a piece's half edges; returns how many there are then. `sign` places its centre. */
-function addGenerators(body: Body, piece: number, sign: number, count: number): number {
-  const { world } = body;
-  const s = body.start[piece]!;
-  if (body.core[piece] === CORE_BOX) {
-    for (let k = 0; k < 3; k++) CENTRE[k] = CENTRE[k]! + sign * world[s + k]!;
-    for (let k = 0; k < 9; k++) GENERATORS[3 * count + k] = world[s + 3 + k]!;
-    return count + 3;
-  }
-  if (body.corners[piece] === 1) {
-    for (let k = 0; k < 3; k++) CENTRE[k] = CENTRE[k]! + sign * world[s + k]!;
-    return count;
-  }
-  for (let k = 0; k < 3; k++) {
-    const p = world[s + k]!;
-    const q = world[s + 3 + k]!;
-    CENTRE[k] = CENTRE[k]! + (sign * (p + q)) / 2;
-    GENERATORS[3 * count + k] = (q - p) / 2;
-  }
-  return count + 1;
-}
-
-function addTravel(travel: Float64Array, count: number): number {
-  for (let k = 0; k < 3; k++) {
-    CENTRE[k] = CENTRE[k]! - (travel[k]! + travel[3 + k]!) / 2;
-    const half = (travel[3 + k]! - travel[k]!) / 2;
-    if (half === 0) continue;
-    GENERATORS.fill(0, 3 * count, 3 * count + 3);
-    GENERATORS[3 * count + k] = half;
-    count++;
-  }
-  return count;
-}
-
-function zonotopeDepth(a: Body, pieceA: number, b: Body, pieceB: number, travel: Float64Array | null): number {
-  CENTRE.fill(0);
-  let count = addGenerators(a, pieceA, 1, 0);
-  count = addGenerators(b, pieceB, -1, count);
-  if (travel !== null) count = addTravel(travel, count);
-  let best = Infinity;
-  let bx = 1;
-  let by = 0;
-  let bz = 0;
-  for (let i = 0; i < count; i++) {
-    const gx = GENERATORS[3 * i]!;
-    const gy = GENERATORS[3 * i + 1]!;
-    const gz = GENERATORS[3 * i + 2]!;
-    for (let j = i + 1; j < count; j++) {
-      const hx = GENERATORS[3 * j]!;
-      const hy = GENERATORS[3 * j + 1]!;
-      const hz = GENERATORS[3 * j + 2]!;
-      let x = gy * hz - gz * hy;
-      let y = gz * hx - gx * hz;
-      let z = gx * hy - gy * hx;
-      const square = x * x + y * y + z * z;
-      if (!(square > 1e-24 * (gx * gx + gy * gy + gz * gz) * (hx * hx + hy * hy + hz * hz))) continue;
-      const length = Math.sqrt(square);
-      if (!(length > 0)) continue;
-      x /= length;
-      y /= length;
-      z /= length;
-      let reach = 0;
-      for (let k = 0; k < 3 * count; k += 3) {
-        reach += Math.abs(GENERATORS[k]! * x + GENERATORS[k + 1]! * y + GENERATORS[k + 2]! * z);
-      }
-      const along = CENTRE[0]! * x + CENTRE[1]! * y + CENTRE[2]! * z;
-      const width = reach - Math.abs(along);
-      if (width < best) {
-        const sign = along > 0 ? -1 : 1;
-        best = width;
-        bx = sign * x;
-        by = sign * y;
-        bz = sign * z;
-      }
-    }
-  }
-  if (best === Infinity) {
-    // Fewer than two directions: a line or a point, which any direction square to it (and to the offset) leaves at once.
-    const gx = count > 0 ? GENERATORS[0]! : CENTRE[0]!;
-    const gy = count > 0 ? GENERATORS[1]! : CENTRE[1]!;
-    const gz = count > 0 ? GENERATORS[2]! : CENTRE[2]!;
-    if (gx * gx + gy * gy + gz * gz > 0) {
-      const [mx, my, mz] = [Math.abs(gx), Math.abs(gy), Math.abs(gz)];
-      const x = mx <= my && mx <= mz ? 0 : my <= mz ? -gz : gy;
-      const y = mx <= my && mx <= mz ? gz : my <= mz ? 0 : -gx;
-      const z = mx <= my && mx <= mz ? -gy : my <= mz ? gx : 0;
-      const length = Math.sqrt(x * x + y * y + z * z);
-      bx = x / length;
-      by = y / length;
-      bz = z / length;
-    }
-  }
-  return tryDirection(a, pieceA, b, pieceB, travel, bx, by, bz);
-}
-
-/** The disc of `discDepth`: its radius times two unit directions in it. */
-const DISC = new Float64Array(6);
-
-/** Width of disc and zonotope along a unit direction. */
-function discWidth(count: number, x: number, y: number, z: number): number {
-  const p = DISC[0]! * x + DISC[1]! * y + DISC[2]! * z;
-  const q = DISC[3]! * x + DISC[4]! * y + DISC[5]! * z;
-  let width = Math.sqrt(p * p + q * q) + CENTRE[0]! * x + CENTRE[1]! * y + CENTRE[2]! * z;
-  for (let k = 0; k < 3 * count; k += 3) {
-    width += Math.abs(GENERATORS[k]! * x + GENERATORS[k + 1]! * y + GENERATORS[k + 2]! * z);
-  }
-  return width;
-}
-
-const FOUND = new Float64Array(4);
-function offerWidth(width: number, x: number, y: number, z: number): void {
-  if (width >= FOUND[0]!) return;
-  FOUND[0] = width;
-  FOUND[1] = x;
-  FOUND[2] = y;
-  FOUND[3] = z;
-}
-
-/** Samples between two breaks of a circle of directions before the best is narrowed. */
-const SAMPLES = 12;
-const BREAKS = new Float64Array(24);
-const CIRCLE = new Float64Array(6);
-
-function circleWidth(count: number, angle: number): number {
-  const c = Math.cos(angle);
-  const s = Math.sin(angle);
-  return discWidth(
-    count,
-    c * CIRCLE[0]! + s * CIRCLE[3]!,
-    c * CIRCLE[1]! + s * CIRCLE[4]!,
-    c * CIRCLE[2]! + s * CIRCLE[5]!,
-  );
-}
-
-/**
- * A circular cylinder against a box, a segment or a point, with any travel: A - B - T is a disc plus a zonotope. Its surface
- * near the origin is flat (square to two generators, or to the disc) or swept by an edge of the zonotope (a direction square
- * to one generator); where only a corner meets the rim the surface is an edge, from which no shortest way leads. So the
- * directions square to each generator are searched, one circle at a time: between the breaks set by the others the width is
- * smooth, and its lowest sample is narrowed by golden section and parabola.
- */
-function discDepth(
-  round: Body,
-  piece: number,
-  sign: number,
-  other: Body,
-  otherPiece: number,
-  a: Body,
-  pieceA: number,
-  b: Body,
-  pieceB: number,
-  travel: Float64Array | null,
-): number {
-  const { world } = round;
-  const s = round.start[piece]!;
-  CENTRE.fill(0);
-  for (let k = 0; k < 3; k++) {
-    CENTRE[k] = sign * world[s + k]!;
-    GENERATORS[k] = world[s + 3 + k]!;
-    DISC[k] = world[s + 6 + k]!;
-    DISC[3 + k] = world[s + 9 + k]!;
-  }
-  let count = addGenerators(other, otherPiece, -sign, 1);
-  if (travel !== null) count = addTravel(travel, count);
-  FOUND[0] = Infinity;
-  for (let i = 0; i < count; i++) circleOf(i, count);
-  const ax = GENERATORS[0]!;
-  const ay = GENERATORS[1]!;
-  const az = GENERATORS[2]!;
-  const half = Math.sqrt(ax * ax + ay * ay + az * az);
-  offerWidth(discWidth(count, ax / half, ay / half, az / half), ax / half, ay / half, az / half);
-  offerWidth(discWidth(count, -ax / half, -ay / half, -az / half), -ax / half, -ay / half, -az / half);
-  return tryDirection(a, pieceA, b, pieceB, travel, FOUND[1]!, FOUND[2]!, FOUND[3]!);
-}
-
-/** The least width over the directions square to generator i. */
-function circleOf(i: number, count: number): void {
-  const gx = GENERATORS[3 * i]!;
-  const gy = GENERATORS[3 * i + 1]!;
-  const gz = GENERATORS[3 * i + 2]!;
-  const length = Math.sqrt(gx * gx + gy * gy + gz * gz);
-  if (!(length > 0)) return;
-  const x = gx / length;
-  const y = gy / length;
-  const z = gz / length;
-  const [mx, my, mz] = [Math.abs(x), Math.abs(y), Math.abs(z)];
-  let ux = mx <= my && mx <= mz ? 0 : my <= mz ? -z : y;
-  let uy = mx <= my && mx <= mz ? z : my <= mz ? 0 : -x;
-  let uz = mx <= my && mx <= mz ? -y : my <= mz ? x : 0;
-  const across = Math.sqrt(ux * ux + uy * uy + uz * uz);
-  ux /= across;
-  uy /= across;
-  uz /= across;
-  CIRCLE[0] = ux;
-  CIRCLE[1] = uy;
-  CIRCLE[2] = uz;
-  CIRCLE[3] = y * uz - z * uy;
-  CIRCLE[4] = z * ux - x * uz;
-  CIRCLE[5] = x * uy - y * ux;
-  // Breaks: the directions square to another generator too.
-  let breaks = 0;
-  for (let k = 0; k < count; k++) {
-    if (k === i) continue;
-    const p = GENERATORS[3 * k]! * ux + GENERATORS[3 * k + 1]! * uy + GENERATORS[3 * k + 2]! * uz;
-    const q = GENERATORS[3 * k]! * CIRCLE[3]! + GENERATORS[3 * k + 1]! * CIRCLE[4]! + GENERATORS[3 * k + 2]! * CIRCLE[5]!;
-    if (p * p + q * q === 0) continue;
-    const angle = Math.atan2(-p, q);
-    BREAKS[breaks++] = angle < 0 ? angle + Math.PI : angle;
-  }
-  if (breaks === 0) BREAKS[breaks++] = 0;
-  for (let k = 1; k < breaks; k++) {
-    const angle = BREAKS[k]!;
-    let at = k;
-    while (at > 0 && BREAKS[at - 1]! > angle) {
-      BREAKS[at] = BREAKS[at - 1]!;
-      at--;
-    }
-    BREAKS[at] = angle;
-  }
-  for (let turn = 0; turn < 2; turn++) {
-    for (let k = 0; k < breaks; k++) {
-      const from = BREAKS[k]! + turn * Math.PI;
-      const to = k + 1 < breaks ? BREAKS[k + 1]! + turn * Math.PI : BREAKS[0]! + (turn + 1) * Math.PI;
-      arcMinimum(count, from, to);
-    }
-  }
-}
-
-function arcMinimum(count: number, from: number, to: number): void {
-  const step = (to - from) / SAMPLES;
-  let before = circleWidth(count, from);
-  keepAngle(before, from);
-  if (!(step > 1e-12)) return;
-  let here = circleWidth(count, from + step);
-  for (let k = 2; k <= SAMPLES + 1; k++) {
-    const after = k <= SAMPLES ? circleWidth(count, from + k * step) : Infinity;
-    // A dip between three samples, deep enough to matter: a width cannot fall more than this between samples.
-    if (here <= before && here <= after) narrow(count, from + (k - 2) * step, from + Math.min(k, SAMPLES) * step);
-    before = here;
-    here = after;
-  }
-}
-
-function keepAngle(width: number, angle: number): void {
-  if (width >= FOUND[0]!) return;
-  const c = Math.cos(angle);
-  const s = Math.sin(angle);
-  offerWidth(
-    width,
-    c * CIRCLE[0]! + s * CIRCLE[3]!,
-    c * CIRCLE[1]! + s * CIRCLE[4]!,
-    c * CIRCLE[2]! + s * CIRCLE[5]!,
-  );
-}
-
-const GOLDEN = 0.6180339887498949;
-
-/** Golden section on one dip, to where rounding hides any further gain. */
-function narrow(count: number, low: number, high: number): void {
-  let p = high - GOLDEN * (high - low);
-  let q = low + GOLDEN * (high - low);
-  let fp = circleWidth(count, p);
-  let fq = circleWidth(count, q);
-  while (high - low > 1e-8) {
-    if (fp <= fq) {
-      high = q;
-      q = p;
-      fq = fp;
-      p = high - GOLDEN * (high - low);
-      fp = circleWidth(count, p);
-    } else {
-      low = p;
-      p = q;
-      fp = fq;
-      q = low + GOLDEN * (high - low);
-      fq = circleWidth(count, q);
-    }
-  }
-  if (fp <= fq) keepAngle(fp, p);
-  else keepAngle(fq, q);
 }
 
 /** Axis (half length times direction) and radius of a cylinder, a segment or a point; false for anything else. */
@@ -437,6 +151,9 @@ function boxFacets(local: Float64Array, at: number): Facets {
     const [p, q] = [faces[(k + 1) % 3]!, faces[(k + 2) % 3]!];
     return [p, negated(p)].flatMap((m) => [q, negated(q)].flatMap((n) => [...unit(h[k]!), ...m, ...n]));
   });
+  const corners = [0, 1, 2].flatMap((k) =>
+    [1, -1].flatMap((s) => [0, 1, 2].map((i) => local[at - 3 + i]! + s * h[k]![i]!)),
+  );
   const ends = [0, 1, 2].flatMap((k) => {
     const [p, q] = [h[(k + 1) % 3]!, h[(k + 2) % 3]!];
     return [1, -1].flatMap((s) => [1, -1].flatMap((t) => [0, 1, 2].map((i) => local[at - 3 + i]! + s * p[i]! + t * q[i]!)));
@@ -445,9 +162,11 @@ function boxFacets(local: Float64Array, at: number): Facets {
     normals: Float64Array.from(faces.flatMap((n) => [...n, ...negated(n)])),
     edges: Float64Array.from(edges),
     ends: Float64Array.from(ends),
+    corners: Float64Array.from(corners),
   };
 }
 
+const POINT = new Float64Array(3);
 let turnedA = new Float64Array(9 * 64);
 let turnedB = new Float64Array(9 * 64);
 let endsA = new Float64Array(3 * 64);
@@ -499,12 +218,27 @@ function polytopeDepth(
     endsB = new Float64Array(need);
   }
   turn(a.pose.rotation, facetsA.normals, turnedA, 1);
+  turn(a.pose.rotation, facetsA.corners, endsA, 1, a.pose.at);
   for (let i = 0; i < facetsA.normals.length; i += 3) {
-    tryDirection(a, pieceA, b, pieceB, travel, turnedA[i]!, turnedA[i + 1]!, turnedA[i + 2]!);
+    const x = turnedA[i]!;
+    const y = turnedA[i + 1]!;
+    const z = turnedA[i + 2]!;
+    // A facet's corner is A's support along its normal, to rounding; where that cannot win nothing else is asked.
+    supportPoint(b, pieceB, -x, -y, -z, POINT, 0);
+    const reach = travel === null ? 0 : travelReach(travel, x, y, z);
+    const width = (endsA[i]! - POINT[0]!) * x + (endsA[i + 1]! - POINT[1]!) * y + (endsA[i + 2]! - POINT[2]!) * z + reach;
+    if (width < leastWidth()) tryDirection(a, pieceA, b, pieceB, travel, x, y, z);
   }
   turn(b.pose.rotation, facetsB.normals, turnedB, -1);
+  turn(b.pose.rotation, facetsB.corners, endsB, 1, b.pose.at);
   for (let i = 0; i < facetsB.normals.length; i += 3) {
-    tryDirection(a, pieceA, b, pieceB, travel, turnedB[i]!, turnedB[i + 1]!, turnedB[i + 2]!);
+    const x = turnedB[i]!;
+    const y = turnedB[i + 1]!;
+    const z = turnedB[i + 2]!;
+    supportPoint(a, pieceA, x, y, z, POINT, 0);
+    const reach = travel === null ? 0 : travelReach(travel, x, y, z);
+    const width = (POINT[0]! - endsB[i]!) * x + (POINT[1]! - endsB[i + 1]!) * y + (POINT[2]! - endsB[i + 2]!) * z + reach;
+    if (width < leastWidth()) tryDirection(a, pieceA, b, pieceB, travel, x, y, z);
   }
   if (leastWidth() <= enough) return leastWidth();
   turn(a.pose.rotation, facetsA.edges, turnedA, 1);

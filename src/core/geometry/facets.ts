@@ -9,6 +9,8 @@ export interface Facets {
    * All-zero normals: any direction square to the edge.
    */
   readonly edges: Float64Array;
+  /** A corner of each facet. */
+  readonly corners: Float64Array;
   /** One end of each edge. */
   readonly ends: Float64Array;
 }
@@ -55,10 +57,12 @@ export function hullFacets(given: readonly P[]): Facets | null {
   const normals: P[] = [];
   const edges: P[] = [];
   const ends: P[] = [];
+  const corners: P[] = [];
   const done = (): Facets => ({
     normals: Float64Array.from(normals.flat()),
     edges: Float64Array.from(edges.flat()),
     ends: Float64Array.from(ends.flat()),
+    corners: Float64Array.from(corners.flat()),
   });
   if (points.length === 1) return done();
   const farthest = (value: (p: P) => number): P => points.reduce((a, b) => (value(b) > value(a) ? b : a));
@@ -75,6 +79,7 @@ export function hullFacets(given: readonly P[]): Facets | null {
   const up = cross(along, across);
   if (points.every((p) => Math.abs(dot(sub(p, points[0]!), up)) <= slack)) {
     normals.push(up, scale(-1, up));
+    corners.push(points[0]!, points[0]!);
     const ring = ringOf(points, points.map((_, i) => i), up, slack);
     if (!ring) return null;
     ring.forEach((i, k) => {
@@ -86,7 +91,7 @@ export function hullFacets(given: readonly P[]): Facets | null {
     });
     return done();
   }
-  return wrap(points, slack, normals, edges, ends) ? done() : null;
+  return wrap(points, slack, normals, edges, ends, corners) ? done() : null;
 }
 
 /** The corners of the convex hull of points on a plane, anticlockwise seen from its normal. */
@@ -143,7 +148,14 @@ function pivot(points: readonly P[], p: P, n: P, s: P, slack: number): P | null 
   return scale(1 / length(normal), normal);
 }
 
-function wrap(points: readonly P[], slack: number, normals: P[], edges: P[], ends: P[]): boolean {
+function wrap(
+  points: readonly P[],
+  slack: number,
+  normals: P[],
+  edges: P[],
+  ends: P[],
+  corners: P[],
+): boolean {
   // A direction in no special position to the axes or each other, so that one corner is foremost.
   const d: P = [0.5352331346596349, 0.6208609386262817, 0.5727622013463471];
   const start = points.reduce((a, b) => (dot(b, d) > dot(a, d) ? b : a));
@@ -177,6 +189,7 @@ function wrap(points: readonly P[], slack: number, normals: P[], edges: P[], end
     if (!(dot(sum, normal) > 0)) return false;
     const exact = scale(1 / length(sum), sum);
     normals.push(exact);
+    corners.push(origin);
     ring.forEach((i, k) => {
       const j = ring[(k + 1) % ring.length]!;
       normalOf.set(key(i, j), exact);
