@@ -51,8 +51,8 @@ const SLACK = 1e-9;
 
 const TRAVEL = new Float64Array(6);
 const PARTED = new Float64Array(6);
-/** Direction in which b leaves a most shortly, of the best pair so far. */
-const WAY_OUT = new Float64Array(3);
+/** From b to a along the gap (or against the shortest way out) of the best pair so far, unit length. */
+const DIRECTION = new Float64Array(3);
 let coresOverlap = false;
 let stack = new Int32Array(2 * 1024);
 let stackBound = new Float64Array(1024);
@@ -183,15 +183,13 @@ function measurePair(
 ): number {
   const ra = a.radius[i]!;
   const rb = b.radius[j]!;
-  const enough = best + ra + rb + SLACK;
-  if (out.pieceA >= 0 && enough > 0 && (a.corners[i]! > 2 || b.corners[j]! > 2)) {
-    // The direction of the best pair so far, as a guess of what parts this one too: prunes, never decides.
-    const x = out.pointA[0]! - out.pointB[0]!;
-    const y = out.pointA[1]! - out.pointB[1]!;
-    const z = out.pointA[2]! - out.pointB[2]!;
-    const square = x * x + y * y + z * z;
-    const gap = slabAlong(a, i, b, j, travel, x, y, z);
-    if (gap > 0 && gap * gap > enough * enough * square) return best;
+  const grown = ra + rb;
+  const enough = best + grown + SLACK;
+  if (out.pieceA >= 0 && (a.corners[i]! > 2 || b.corners[j]! > 2)) {
+    // The direction of the best pair so far, as a guess of what parts this one too (or leaves it less deep): any slab
+    // bounds the signed distance from below. It prunes, it never decides.
+    const gap = slabAlong(a, i, b, j, travel, DIRECTION[0]!, DIRECTION[1]!, DIRECTION[2]!);
+    if (gap > enough) return best;
   }
   const core = pairDistance(a, i, b, j, travel, enough);
   if (core === Infinity) return best;
@@ -205,6 +203,7 @@ function measurePair(
     coresOverlap = false;
     for (let k = 0; k < 3; k++) {
       const n = (closestB[k]! - closestA[k]!) / core;
+      DIRECTION[k] = -n;
       out.pointA[k] = closestA[k]! + ra * n;
       out.pointB[k] = closestB[k]! - rb * n;
     }
@@ -218,7 +217,7 @@ function measurePair(
   out.pieceA = i;
   out.pieceB = j;
   out.depthIsEstimate = !depthIsCertain;
-  WAY_OUT.set(separatingNormal);
+  for (let k = 0; k < 3; k++) DIRECTION[k] = -separatingNormal[k]!;
   coresOverlap = true;
   return distance;
 }
@@ -229,13 +228,13 @@ function writeOverlapPoints(a: Body, b: Body, travel: Float64Array | null, out: 
   const rb = b.radius[out.pieceB]!;
   const way = -out.distance - ra - rb + 1;
   for (let k = 0; k < 3; k++) {
-    const step = way * WAY_OUT[k]!;
+    const step = -way * DIRECTION[k]!;
     PARTED[k] = (travel === null ? 0 : travel[k]!) + step;
     PARTED[3 + k] = (travel === null ? 0 : travel[3 + k]!) + step;
   }
   coreDistance(a, out.pieceA, b, out.pieceB, PARTED, Infinity);
   for (let k = 0; k < 3; k++) {
-    const n = WAY_OUT[k]!;
+    const n = -DIRECTION[k]!;
     out.pointA[k] = closestA[k]! + ra * n;
     out.pointB[k] = closestB[k]! - way * n - rb * n;
   }

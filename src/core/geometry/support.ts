@@ -1,5 +1,8 @@
 import { CORE_BOX, CORE_DISCS, CORE_POINTS, CORE_PRISM, type Body } from "./body.ts";
 
+/** Below this a length squared has lost its digits: a disc seen so nearly square on is met at its centre. */
+export const NOTHING = 1e-140;
+
 /**
  * The farthest point of a piece's core along a direction (not its ball radius), world coordinates, mm.
  * Writes it to out[at … at + 2] and returns a number that names the corner it is, or -1 for a point of a round edge.
@@ -133,7 +136,7 @@ export function supportAt(
   let p = ux * dx + uy * dy + uz * dz;
   let q = vx * dx + vy * dy + vz * dz;
   const reach = Math.sqrt(p * p + q * q);
-  if (reach > 0) {
+  if (reach > NOTHING) {
     p /= reach;
     q /= reach;
   }
@@ -176,8 +179,8 @@ function supportOfDiscs(
     if (along > most) {
       most = along;
       name = -1;
-      const a = reach > 0 ? p / reach : 0;
-      const b = reach > 0 ? q / reach : 0;
+      const a = reach > NOTHING ? p / reach : 0;
+      const b = reach > NOTHING ? q / reach : 0;
       out[at] = world[c]! + a * world[w]! + b * world[w + 3]!;
       out[at + 1] = world[c + 1]! + a * world[w + 1]! + b * world[w + 4]!;
       out[at + 2] = world[c + 2]! + a * world[w + 2]! + b * world[w + 5]!;
