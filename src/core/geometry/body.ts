@@ -52,6 +52,8 @@ export interface Body {
   readonly spine: Int32Array;
   readonly spinePoints: Int32Array;
   readonly spineRadius: Float64Array;
+  /** Half edge lengths of a rectangular box, three a piece; zero for anything else. */
+  readonly boxHalf: Float64Array;
   /** Facets of a piece's core, local, made when its depth is first asked for; null where it has none. */
   readonly facets: (Facets | null | undefined)[];
   pose: Pose;
@@ -137,6 +139,17 @@ function isRightCircular([axis, u, v]: readonly Vec3[]): boolean {
     Math.abs(dot(axis!, u!)) <= 1e-13 * h &&
     Math.abs(dot(axis!, v!)) <= 1e-13 * h
   );
+}
+
+/** Lengths of the half edges of a box; zeros when they are not square to each other. */
+function halfOf(edges: readonly Vec3[]): number[] {
+  const dot = (a: Vec3, b: Vec3): number => a[0] * b[0] + a[1] * b[1] + a[2] * b[2];
+  const sizes = edges.map((e) => Math.sqrt(squared(e)));
+  const square = [0, 1, 2].every((k) => {
+    const other = (k + 1) % 3;
+    return Math.abs(dot(edges[k]!, edges[other]!)) <= RECOGNISED * sizes[k]! * sizes[other]!;
+  });
+  return square ? sizes : [0, 0, 0];
 }
 
 interface Spine {
@@ -273,6 +286,7 @@ export function buildBody(pieces: readonly Piece[]): Body {
     spine: new Int32Array(count).fill(-1),
     spinePoints: Int32Array.from(compiled, (c) => (c.spine ? c.spine.points.length - 2 : 0)),
     spineRadius: Float64Array.from(compiled, (c) => c.spine?.radius ?? 0),
+    boxHalf: Float64Array.from(compiled.flatMap((c) => (c.core === CORE_BOX ? halfOf(c.vectors) : [0, 0, 0]))),
     facets: new Array<Facets | null | undefined>(count).fill(undefined),
     pose: IDENTITY,
   };

@@ -1,6 +1,6 @@
 import type { Body } from "./body.ts";
 import { buildBody, setPose } from "./body.ts";
-import { segmentSquare } from "./segments.ts";
+import { segmentBoxSquare, segmentSquare } from "./segments.ts";
 import { coreDistance, slabAlong, TOUCHING, STATS, closestA, closestB } from "./gjk.ts";
 import { coreDepth, depthIsCertain } from "./depth.ts";
 import { separatingNormal } from "./depth-search.ts";
@@ -140,6 +140,18 @@ function pairDistance(a: Body, i: number, b: Body, j: number, travel: Float64Arr
     if (square > within * within && within > 0) return Infinity;
     core = square > TOUCHING * TOUCHING ? Math.sqrt(square) : -1;
     if (!spineA && !spineB) return core;
+  } else if (s >= 0 && b.boxHalf[3 * j]! > 0) {
+    const sEnd = spineA || a.corners[i] === 2 ? s + 3 : s;
+    const square = segmentBoxSquare(a.world, s, sEnd, b.world, b.start[j]!, b.boxHalf, 3 * j, closestA, closestB);
+    if (square > within * within && within > 0) return Infinity;
+    core = square > TOUCHING * TOUCHING ? Math.sqrt(square) : -1;
+    if (!spineA) return core;
+  } else if (t >= 0 && a.boxHalf[3 * i]! > 0) {
+    const tEnd = spineB || b.corners[j] === 2 ? t + 3 : t;
+    const square = segmentBoxSquare(b.world, t, tEnd, a.world, a.start[i]!, a.boxHalf, 3 * i, closestB, closestA);
+    if (square > within * within && within > 0) return Infinity;
+    core = square > TOUCHING * TOUCHING ? Math.sqrt(square) : -1;
+    if (!spineB) return core;
   } else {
     if (!spineA && !spineB) return coreDistance(a, i, b, j, travel, enough);
     core = coreDistance(a, i, b, j, travel, within, spineA, spineB);
