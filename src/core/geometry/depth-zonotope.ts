@@ -1,4 +1,5 @@
-import { CORE_BOX, CORE_POINTS, type Body } from "./body.ts";
+import type { Body } from "./body.ts";
+import { CORE_BOX, CORE_POINTS } from "./compile.ts";
 import { tryDirection } from "./depth-search.ts";
 
 /**

@@ -1,4 +1,5 @@
-import { CORE_BOX, CORE_POINTS, CORE_ROUND, type Body } from "./body.ts";
+import type { Body } from "./body.ts";
+import { CORE_BOX, CORE_POINTS, CORE_ROUND } from "./compile.ts";
 import type { Vec3 } from "../frames.ts";
 import { leastWidth, searchDepth, searchWasCertain, startSearch, tryDirection } from "./depth-search.ts";
 import { discDepth } from "./depth-disc.ts";

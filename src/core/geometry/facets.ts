@@ -1,4 +1,5 @@
-import { CORE_PRISM, type Body } from "./body.ts";
+import type { Body } from "./body.ts";
+import { CORE_PRISM } from "./compile.ts";
 
 /** Facet normals and edges of a convex polytope, in the coordinates of its points: what separating axes are made of. */
 export interface Facets {

@@ -1,4 +1,5 @@
-import { CORE_POINTS, type Body } from "./body.ts";
+import type { Body } from "./body.ts";
+import { CORE_POINTS } from "./compile.ts";
 import { supportAt, supportPoint } from "./support.ts";
 
 /**

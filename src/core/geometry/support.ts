@@ -1,4 +1,5 @@
-import { CORE_BOX, CORE_DISCS, CORE_POINTS, CORE_PRISM, type Body } from "./body.ts";
+import type { Body } from "./body.ts";
+import { CORE_BOX, CORE_DISCS, CORE_POINTS, CORE_PRISM } from "./compile.ts";
 
 /** Below this a length squared has lost its digits: a disc seen so nearly square on is met at its centre. */
 export const NOTHING = 1e-140;

@@ -1,6 +1,8 @@
 import fc from "fast-check";
 import { describe, expect, it } from "vitest";
-import { measurePieces } from "#core/geometry/measure.ts";
+import { bodyBox, buildBody, setPose } from "#core/geometry/body.ts";
+import { createMeasure, createPairCache, measureBodies, measurePieces, type Measure } from "#core/geometry/measure.ts";
+import { candidatePairs, candidatesOf, createSweep, updateSweep } from "#core/geometry/sweep.ts";
 import type { Piece, Pose } from "#core/geometry/piece.ts";
 import {
   add,
@@ -14,6 +16,7 @@ import {
   poses,
   rounds,
   sphereOf,
+  spin,
   sub,
   supportHeight,
   times,
@@ -167,6 +170,136 @@ describe("measurePieces", () => {
         expect(m.distance).toBeLessThanOrEqual(0);
       }),
       runs(1500, 7),
+    );
+  });
+});
+
+const bodies = fc
+  .tuple(fc.array(fc.tuple(anyPiece, poses(250)), { minLength: 1, maxLength: 12 }), poses(250))
+  .map(([list, pose]) => ({ pieces: list.map(([piece, where]) => placed(piece, where)), pose }));
+
+function placed(piece: Piece, pose: Pose): Piece {
+  return {
+    ...piece,
+    points: piece.points.map((p) => place(pose, p)),
+    discs: piece.discs.map((d) => ({ centre: place(pose, d.centre), u: spin(pose.rotation, d.u), v: spin(pose.rotation, d.v) })),
+  };
+}
+
+const asNumbers = (m: Measure): number[] => [m.distance, ...m.pointA, ...m.pointB, m.pieceA, m.pieceB, Number(m.overlapping), Number(m.depthIsEstimate)];
+
+describe("measureBodies", () => {
+  it(`is the least over all pairs of pieces, in whatever tree they are (seed ${SEED + 8})`, () => {
+    fc.assert(
+      fc.property(bodies, bodies, travels, (a, b, travel) => {
+        const [bodyA, bodyB] = [buildBody(a.pieces), buildBody(b.pieces)];
+        setPose(bodyA, a.pose);
+        setPose(bodyB, b.pose);
+        const out = createMeasure();
+        measureBodies(bodyA, bodyB, travel, Infinity, out);
+        let least = Infinity;
+        for (const p of a.pieces) for (const q of b.pieces) least = Math.min(least, measurePieces(p, a.pose, q, b.pose, travel).distance);
+        expect(Math.abs(out.distance - least)).toBeLessThan(1e-9);
+        expect(out.overlapping).toBe(least <= 0);
+        const cutoff = 40;
+        measureBodies(bodyA, bodyB, travel, cutoff, out);
+        if (least < cutoff - 1e-6) expect(Math.abs(out.distance - least)).toBeLessThan(1e-9);
+        if (least > cutoff + 1e-6) expect(out.distance).toBe(Infinity);
+      }),
+      runs(250, 8),
+    );
+  });
+
+  it(`gives the same bits whatever the cache remembers and whatever was measured before (seed ${SEED + 9})`, () => {
+    fc.assert(
+      fc.property(bodies, bodies, travels, fc.array(poses(250), { minLength: 1, maxLength: 6 }), fc.nat(11), fc.nat(11), (a, b, travel, path, i, j) => {
+        const fresh = (pose: Pose): number[] => {
+          const [bodyA, bodyB] = [buildBody(a.pieces), buildBody(b.pieces)];
+          setPose(bodyA, a.pose);
+          setPose(bodyB, pose);
+          const out = createMeasure();
+          measureBodies(bodyA, bodyB, travel, 150, out);
+          return asNumbers(out);
+        };
+        const [bodyA, bodyB] = [buildBody(a.pieces), buildBody(b.pieces)];
+        setPose(bodyA, a.pose);
+        const cache = createPairCache(1);
+        cache.pieceA[0] = i;
+        cache.pieceB[0] = j;
+        const out = createMeasure();
+        for (const pose of path) {
+          setPose(bodyB, pose);
+          measureBodies(bodyA, bodyB, travel, 150, out, cache, 0);
+          if (out.distance < Infinity) expect(asNumbers(out)).toEqual(fresh(pose));
+          else expect(fresh(pose)[0]).toBe(Infinity);
+        }
+      }),
+      runs(250, 9),
+    );
+  });
+
+  it(`moves a body to the same bits by any way round (seed ${SEED + 10})`, () => {
+    fc.assert(
+      fc.property(bodies, fc.array(poses(250), { maxLength: 4 }), (a, path) => {
+        const moved = buildBody(a.pieces);
+        for (const pose of path) setPose(moved, pose);
+        setPose(moved, a.pose);
+        const direct = buildBody(a.pieces);
+        setPose(direct, a.pose);
+        expect([...moved.world]).toEqual([...direct.world]);
+        expect([...moved.boxes]).toEqual([...direct.boxes]);
+      }),
+      runs(100, 10),
+    );
+  });
+});
+
+describe("candidatePairs", () => {
+  it(`visits each pair of boxes within reach once, in an order that does not depend on the moves before (seed ${SEED + 11})`, () => {
+    fc.assert(
+      fc.property(
+        fc.array(fc.tuple(anyPiece, poses(900), fc.double({ min: 0, max: 40, noNaN: true })), { minLength: 2, maxLength: 25 }),
+        fc.array(fc.tuple(fc.nat(24), poses(900)), { maxLength: 10 }),
+        fc.double({ min: 0, max: 200, noNaN: true }),
+        (list, moves, reach) => {
+          const all = list.map(([piece, pose]) => {
+            const body = buildBody([piece]);
+            setPose(body, pose);
+            return body;
+          });
+          const margins = list.map(([, , margin]) => margin);
+          const sweep = createSweep(all, margins);
+          for (const [k, pose] of moves) {
+            const index = k % all.length;
+            setPose(all[index]!, pose);
+            updateSweep(sweep, index);
+          }
+          const seen: string[] = [];
+          candidatePairs(sweep, reach, (i, j) => seen.push(`${i} ${j}`));
+          const again: string[] = [];
+          candidatePairs(createSweep(all, margins), reach, (i, j) => again.push(`${i} ${j}`));
+          expect(seen).toEqual(again);
+          const expected = new Set<string>();
+          for (let i = 0; i < all.length; i++) {
+            for (let j = i + 1; j < all.length; j++) {
+              const [p, q] = [bodyBox(all[i]!), bodyBox(all[j]!)];
+              const grown = margins[i]! + margins[j]!;
+              const apart = [0, 1, 2].map((k) => Math.max(0, q[k]! - p[k + 3]! - grown, p[k]! - q[k + 3]! - grown));
+              const gap = Math.hypot(...apart);
+              if (gap < reach - 1e-9) expected.add(`${i} ${j}`);
+              else if (gap <= reach + 1e-9 && seen.includes(`${i} ${j}`)) expected.add(`${i} ${j}`);
+            }
+          }
+          expect([...seen].sort()).toEqual([...expected].sort());
+          for (let i = 0; i < all.length; i++) {
+            const near: number[] = [];
+            candidatesOf(sweep, i, reach, (j) => near.push(j));
+            const from = seen.map((s) => s.split(" ").map(Number)).filter((p) => p.includes(i)).map((p) => (p[0] === i ? p[1]! : p[0]!));
+            expect(near).toEqual(from.sort((x, y) => x - y));
+          }
+        },
+      ),
+      runs(200, 11),
     );
   });
 });
