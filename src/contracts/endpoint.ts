@@ -25,12 +25,14 @@ export interface Endpoint<Params extends z.ZodType = z.ZodType, Query extends z.
   readonly produces?: "application/pdf" | "application/json" | "text/csv" | "image/svg+xml";
   /** Largest request body, bytes; 100 kB where absent. */
   readonly bodyLimit?: number;
+  /** The handler takes the body as text and has it parsed in a worker: large files stay off the event loop. */
+  readonly bodyAsText?: boolean;
 }
 
 export const nothing = z.strictObject({});
 
 export function endpoint<P extends z.ZodType = typeof nothing, Q extends z.ZodType = typeof nothing, B extends z.ZodType = typeof nothing, R extends z.ZodType = typeof nothing>(
-  description: Partial<Pick<Endpoint<P, Q, B, R>, "params" | "query" | "body" | "produces" | "bodyLimit">> &
+  description: Partial<Pick<Endpoint<P, Q, B, R>, "params" | "query" | "body" | "produces" | "bodyLimit" | "bodyAsText">> &
     Pick<Endpoint<P, Q, B, R>, "name" | "method" | "path" | "policy" | "response">,
 ): Endpoint<P, Q, B, R> {
   return { params: nothing as unknown as P, query: nothing as unknown as Q, body: nothing as unknown as B, ...description };

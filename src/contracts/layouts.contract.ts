@@ -14,7 +14,7 @@ export const listLayouts = endpoint({ name: "listLayouts", method: "GET", path: 
 /** A new layout: empty on a plain chassis. */
 export const createLayout = endpoint({ name: "createLayout", method: "POST", path: "/api/builds/:buildId/layouts", policy: members("owner"), params: build, body: z.strictObject({ name }), response: layoutSummarySchema });
 /** Takes a layout file as it is; every fault is named with its path. */
-export const importLayout = endpoint({ name: "importLayout", method: "POST", path: "/api/builds/:buildId/layouts/import", policy: members("owner"), params: build, body: layoutSchema, bodyLimit: 20 * 1024 * 1024, response: layoutSummarySchema });
+export const importLayout = endpoint({ name: "importLayout", method: "POST", path: "/api/builds/:buildId/layouts/import", policy: members("owner"), params: build, body: layoutSchema, bodyAsText: true, bodyLimit: 20 * 1024 * 1024, response: layoutSummarySchema });
 export const getLayout = endpoint({ name: "getLayout", method: "GET", path: "/api/builds/:buildId/layouts/:layoutId", policy: members(...EVERY_ROLE), params: layout, response: z.object({ id, seq: z.int(), archived: z.boolean(), document: layoutSchema }) });
 /** The layout file, as an attachment. */
 export const exportLayout = endpoint({ name: "exportLayout", method: "GET", path: "/api/builds/:buildId/layouts/:layoutId/file", policy: members(...EVERY_ROLE), params: layout, response: layoutSchema, produces: "application/json" });
