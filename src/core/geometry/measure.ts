@@ -1,6 +1,7 @@
 import type { Body } from "./body.ts";
 import { buildBody, setPose } from "./body.ts";
-import { segmentBoxSquare, segmentSquare } from "./segments.ts";
+import { edgeDistance, lineBetween, roundBoxDistance } from "./rims.ts";
+import { BEYOND, CLOSEST_AT, segmentBoxSquare, segmentSquare } from "./segments.ts";
 import { coreDistance, slabAlong, TOUCHING, STATS, closestA, closestB } from "./gjk.ts";
 import { coreDepth, depthIsCertain } from "./depth.ts";
 import { separatingNormal } from "./depth-search.ts";
@@ -119,6 +120,48 @@ function segmentStart(body: Body, piece: number): number {
   return body.corners[piece]! <= 2 && body.discs[piece] === 0 ? body.start[piece]! : -1;
 }
 
+/** Whether a point is within a segment, up to a billionth of its length. */
+function onSegment(world: Float64Array, at: number, to: number, p: Float64Array): boolean {
+  const x = world[to]! - world[at]!;
+  const y = world[to + 1]! - world[at + 1]!;
+  const z = world[to + 2]! - world[at + 2]!;
+  const t = (p[0]! - world[at]!) * x + (p[1]! - world[at + 1]!) * y + (p[2]! - world[at + 2]!) * z;
+  const square = x * x + y * y + z * z;
+  return t >= 0 && t <= square;
+}
+
+/**
+ * The nearest features of two segment-like pieces are not both round sides: a rim or an end of one against the side or a
+ * rim or end of the other. -1 when that is not so either (an end face, say).
+ */
+function rimDistance(
+  a: Body,
+  i: number,
+  b: Body,
+  j: number,
+  s: number,
+  sEnd: number,
+  t: number,
+  tEnd: number,
+  enough: number,
+): number {
+  const vx = closestA[0]! - closestB[0]!;
+  const vy = closestA[1]! - closestB[1]!;
+  const vz = closestA[2]! - closestB[2]!;
+  const insideA = CLOSEST_AT[0]! > 0 && CLOSEST_AT[0]! < 1;
+  const insideB = CLOSEST_AT[1]! > 0 && CLOSEST_AT[1]! < 1;
+  if (insideA && !insideB && lineBetween(a.world, s, sEnd, a.spineRadius[i]!)) {
+    const found = edgeDistance(a, i, b, j, vx, vy, vz, 1, enough);
+    if (found === Infinity) return found;
+    if (found > 0 && (a.spine[i]! >= 0 ? onRoundSide(a, i, closestA[0]!, closestA[1]!, closestA[2]!) : onSegment(a.world, s, sEnd, closestA))) return found;
+  } else if (insideB && !insideA && lineBetween(b.world, t, tEnd, b.spineRadius[j]!)) {
+    const found = edgeDistance(a, i, b, j, vx, vy, vz, 2, enough);
+    if (found === Infinity) return found;
+    if (found > 0 && (b.spine[j]! >= 0 ? onRoundSide(b, j, closestB[0]!, closestB[1]!, closestB[2]!) : onSegment(b.world, t, tEnd, closestB))) return found;
+  }
+  return edgeDistance(a, i, b, j, vx, vy, vz, 0, enough);
+}
+
 /**
  * Distance of the cores of two pieces, -1 when they overlap, Infinity when more than `enough`; closest points in
  * `closestA`, `closestB`. Segments and the spines of round pieces have closed forms; a spine's answer counts where the
@@ -132,31 +175,24 @@ function pairDistance(a: Body, i: number, b: Body, j: number, travel: Float64Arr
   const within = enough + ra + rb;
   const s = travel === null ? segmentStart(a, i) : -1;
   const t = travel === null ? segmentStart(b, j) : -1;
+  const sEnd = spineA || a.corners[i] === 2 ? s + 3 : s;
+  const tEnd = spineB || b.corners[j] === 2 ? t + 3 : t;
   let core: number;
   if (s >= 0 && t >= 0) {
-    const sEnd = spineA || a.corners[i] === 2 ? s + 3 : s;
-    const tEnd = spineB || b.corners[j] === 2 ? t + 3 : t;
-    const square = segmentSquare(a.world, s, sEnd, b.world, t, tEnd);
-    if (square > within * within && within > 0) return Infinity;
-    core = square > TOUCHING * TOUCHING ? Math.sqrt(square) : -1;
-    if (!spineA && !spineB) return core;
+    core = segmentSquare(a.world, s, sEnd, b.world, t, tEnd);
   } else if (s >= 0 && b.boxHalf[3 * j]! > 0) {
-    const sEnd = spineA || a.corners[i] === 2 ? s + 3 : s;
-    const square = segmentBoxSquare(a.world, s, sEnd, b.world, b.start[j]!, b.boxHalf, 3 * j, closestA, closestB);
-    if (square > within * within && within > 0) return Infinity;
-    core = square > TOUCHING * TOUCHING ? Math.sqrt(square) : -1;
-    if (!spineA) return core;
+    core = segmentBoxSquare(a.world, s, sEnd, b.world, b.start[j]!, b.boxHalf, 3 * j, closestA, closestB);
   } else if (t >= 0 && a.boxHalf[3 * i]! > 0) {
-    const tEnd = spineB || b.corners[j] === 2 ? t + 3 : t;
-    const square = segmentBoxSquare(b.world, t, tEnd, a.world, a.start[i]!, a.boxHalf, 3 * i, closestB, closestA);
-    if (square > within * within && within > 0) return Infinity;
-    core = square > TOUCHING * TOUCHING ? Math.sqrt(square) : -1;
-    if (!spineB) return core;
+    core = segmentBoxSquare(b.world, t, tEnd, a.world, a.start[i]!, a.boxHalf, 3 * i, closestB, closestA);
   } else {
     if (!spineA && !spineB) return coreDistance(a, i, b, j, travel, enough);
     core = coreDistance(a, i, b, j, travel, within, spineA, spineB);
     if (core === Infinity) return core;
+    core = core > 0 ? core * core : 0;
   }
+  if (core > within * within && within > 0) return Infinity;
+  core = core > TOUCHING * TOUCHING ? Math.sqrt(core) : -1;
+  if (!spineA && !spineB) return core;
   const distance = core - ra - rb;
   if (distance > TOUCHING) {
     const nx = (closestB[0]! - closestA[0]!) / core;
@@ -179,6 +215,17 @@ function pairDistance(a: Body, i: number, b: Body, j: number, travel: Float64Arr
         return distance;
       }
     }
+  }
+  if (core > 0 && travel === null) {
+    let found: number;
+    if (s >= 0 && t >= 0) found = rimDistance(a, i, b, j, s, sEnd, t, tEnd, enough);
+    else if (s >= 0 && b.boxHalf[3 * j]! > 0) found = roundBoxDistance(a, i, b, j, true, BEYOND, enough);
+    else if (t >= 0 && a.boxHalf[3 * i]! > 0) found = roundBoxDistance(b, j, a, i, false, BEYOND, enough);
+    else {
+      const [p, q] = [closestA, closestB];
+      found = edgeDistance(a, i, b, j, p[0]! - q[0]!, p[1]! - q[1]!, p[2]! - q[2]!, 0, enough);
+    }
+    if (found > 0) return found;
   }
   return coreDistance(a, i, b, j, travel, enough);
 }

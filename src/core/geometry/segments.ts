@@ -1,5 +1,11 @@
 import { closestA, closestB } from "./gjk.ts";
 
+/** Where on the two segments of the last `segmentSquare` the closest points are: 0 … 1. */
+export const CLOSEST_AT = new Float64Array(2);
+
+/** How far beyond the faces of the box the segment's point of the last `segmentBoxSquare` is, along its three axes, signed. */
+export const BEYOND = new Float64Array(3);
+
 /** Under this share of the product of their squares two segments count as parallel: sine of the angle 3e-8. */
 const PARALLEL = 1e-15;
 
@@ -63,6 +69,8 @@ export function segmentSquare(
   closestB[0] = bx;
   closestB[1] = by;
   closestB[2] = bz;
+  CLOSEST_AT[0] = s;
+  CLOSEST_AT[1] = t;
   const dx = ax - bx;
   const dy = ay - by;
   const dz = az - bz;
@@ -154,6 +162,9 @@ export function segmentBoxSquare(
       }
     }
   }
+  BEYOND[0] = u;
+  BEYOND[1] = v;
+  BEYOND[2] = w;
   const sx = px + t * ex;
   const sy = py + t * ey;
   const sz = pz + t * ez;
