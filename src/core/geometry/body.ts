@@ -1,4 +1,4 @@
-import { compilePiece, CORE_BOX, CORE_DISCS, CORE_PRISM, CORE_ROUND, halfOf, isRightCircular } from "./compile.ts";
+import { compilePiece, CORE_BOX, CORE_DISCS, CORE_PRISM, CORE_RING, CORE_ROUND, halfOf, isRightCircular } from "./compile.ts";
 import { IDENTITY, type Piece, type Pose } from "./piece.ts";
 import type { Facets } from "./facets.ts";
 
@@ -173,7 +173,7 @@ function pieceBox(body: Body, piece: number, out: Float64Array, at: number): voi
         if (c < low) low = c;
         if (c > high) high = c;
       }
-      if (core === CORE_PRISM) {
+      if (core === CORE_PRISM || core === CORE_RING) {
         const offset = world[s + 3 * n + k]!;
         if (offset < 0) low += offset;
         else high += offset;

@@ -16,6 +16,8 @@ export const CORE_PRISM = 2;
 export const CORE_ROUND = 3;
 /** Points and discs in any number. */
 export const CORE_DISCS = 4;
+/** A prism on a convex ring of ten corners or more, walked round rather than searched: ring, offset, two directions of its plane. */
+export const CORE_RING = 5;
 
 const squared = (a: Vec3): number => a[0] * a[0] + a[1] * a[1] + a[2] * a[2];
 const minus = (a: Vec3, b: Vec3): Vec3 => [a[0] - b[0], a[1] - b[1], a[2] - b[2]];
@@ -69,6 +71,41 @@ function prismOffset(points: readonly Vec3[]): Vec3 | undefined {
   const slack = 4 * RECOGNISED * extentOf(points);
   for (let i = 1; i < n; i++) if (!near(minus(points[n + i]!, points[i]!), offset, slack)) return undefined;
   return offset;
+}
+
+/**
+ * Two directions of a ring's plane, the first toward its first corner, the second a quarter on in the order of the ring;
+ * undefined when the ring is not flat or does not turn one way at every corner.
+ */
+function ringPlane(ring: readonly Vec3[]): [Vec3, Vec3] | undefined {
+  const n = ring.length;
+  const cross = (a: Vec3, b: Vec3): Vec3 => [a[1] * b[2] - a[2] * b[1], a[2] * b[0] - a[0] * b[2], a[0] * b[1] - a[1] * b[0]];
+  const dot = (a: Vec3, b: Vec3): number => a[0] * b[0] + a[1] * b[1] + a[2] * b[2];
+  const centre: Vec3 = [0, 1, 2].map((k) => ring.reduce((sum, p) => sum + p[k]!, 0) / n) as unknown as Vec3;
+  let area: Vec3 = [0, 0, 0];
+  ring.forEach((p, i) => {
+    const c = cross(minus(p, centre), minus(ring[(i + 1) % n]!, centre));
+    area = [area[0] + c[0], area[1] + c[1], area[2] + c[2]];
+  });
+  const size = Math.sqrt(squared(area));
+  if (size === 0) return undefined;
+  const normal: Vec3 = [area[0] / size, area[1] / size, area[2] / size];
+  let turned = 0;
+  for (let i = 0; i < n; i++) {
+    if (Math.abs(dot(minus(ring[i]!, centre), normal)) > 1e-12 * Math.sqrt(size)) return undefined;
+    const before = minus(ring[i]!, ring[(i + n - 1) % n]!);
+    const after = minus(ring[(i + 1) % n]!, ring[i]!);
+    const lengths = Math.sqrt(squared(before) * squared(after));
+    const sine = dot(cross(before, after), normal) / lengths;
+    if (!(sine > 1e-9)) return undefined;
+    turned += Math.atan2(sine, dot(before, after) / lengths);
+  }
+  // Once round, not twice.
+  if (Math.abs(turned - 2 * Math.PI) > 1e-6) return undefined;
+  const first = minus(ring[0]!, centre);
+  const length = Math.sqrt(squared(first));
+  const u: Vec3 = [first[0] / length, first[1] / length, first[2] / length];
+  return [u, cross(normal, u)];
 }
 
 /** Two like discs facing each other: a cylinder, straight or slanted, circular or elliptic. */
@@ -196,6 +233,8 @@ export function compilePiece(piece: Piece): Compiled {
     const offset = points.length > 8 || points.length === 6 ? prismOffset(points) : undefined;
     if (offset) {
       const ring = points.slice(0, points.length / 2);
+      const plane = ring.length >= 10 ? ringPlane(ring) : undefined;
+      if (plane) return { core: CORE_RING, placed: ring, vectors: [offset, ...plane], corners: ring.length, discs: 0 };
       return { core: CORE_PRISM, placed: ring, vectors: [offset], corners: ring.length, discs: 0 };
     }
     return { core: CORE_POINTS, placed: points, vectors: [], corners: points.length, discs: 0 };

@@ -1,5 +1,5 @@
 import type { Body } from "./body.ts";
-import { CORE_PRISM } from "./compile.ts";
+import { CORE_PRISM, CORE_RING } from "./compile.ts";
 
 /** Facet normals and edges of a convex polytope, in the coordinates of its points: what separating axes are made of. */
 export interface Facets {
@@ -37,7 +37,7 @@ export function facetsOf(body: Body, piece: number): Facets | null {
   const n = body.corners[piece]!;
   const read = (at: number): P => [body.local[at]!, body.local[at + 1]!, body.local[at + 2]!];
   for (let i = 0; i < n; i++) points.push(read(s + 3 * i));
-  if (body.core[piece] === CORE_PRISM) {
+  if (body.core[piece] === CORE_PRISM || body.core[piece] === CORE_RING) {
     const offset = read(s + 3 * n);
     for (let i = 0; i < n; i++) points.push(mix(1, points[i]!, 1, offset));
   }

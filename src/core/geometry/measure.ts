@@ -1,6 +1,6 @@
 import type { Body } from "./body.ts";
 import { buildBody, setPose } from "./body.ts";
-import { edgeDistance, lineBetween, roundBoxDistance } from "./rims.ts";
+import { capDistance, edgeDistance, lineBetween, roundBoxDistance } from "./rims.ts";
 import { BEYOND, CLOSEST_AT, segmentBoxSquare, segmentSquare } from "./segments.ts";
 import { coreDistance, slabAlong, TOUCHING, STATS, closestA, closestB } from "./gjk.ts";
 import { coreDepth, depthIsCertain } from "./depth.ts";
@@ -217,14 +217,18 @@ function pairDistance(a: Body, i: number, b: Body, j: number, travel: Float64Arr
     }
   }
   if (core > 0 && travel === null) {
+    const vx = closestA[0]! - closestB[0]!;
+    const vy = closestA[1]! - closestB[1]!;
+    const vz = closestA[2]! - closestB[2]!;
     let found: number;
     if (s >= 0 && t >= 0) found = rimDistance(a, i, b, j, s, sEnd, t, tEnd, enough);
     else if (s >= 0 && b.boxHalf[3 * j]! > 0) found = roundBoxDistance(a, i, b, j, true, BEYOND, enough);
     else if (t >= 0 && a.boxHalf[3 * i]! > 0) found = roundBoxDistance(b, j, a, i, false, BEYOND, enough);
-    else {
-      const [p, q] = [closestA, closestB];
-      found = edgeDistance(a, i, b, j, p[0]! - q[0]!, p[1]! - q[1]!, p[2]! - q[2]!, 0, enough);
-    }
+    else found = edgeDistance(a, i, b, j, vx, vy, vz, 0, enough);
+    if (found > 0) return found;
+    found = capDistance(a, i, b, j, true, vx, vy, vz, enough);
+    if (found > 0) return found;
+    found = capDistance(b, j, a, i, false, -vx, -vy, -vz, enough);
     if (found > 0) return found;
   }
   return coreDistance(a, i, b, j, travel, enough);

@@ -302,3 +302,53 @@ function edgeDistanceOf(
     ? edgeDistance(round, piece, box, boxPiece, x, y, z, line, enough)
     : edgeDistance(box, boxPiece, round, piece, -x, -y, -z, line, enough);
 }
+
+/**
+ * The end face of a circular cylinder before anything: the foremost point of the other piece stands over the face. The vector
+ * leads from the other piece to the round one. -1 when it does not.
+ */
+export function capDistance(
+  round: Body,
+  piece: number,
+  other: Body,
+  otherPiece: number,
+  roundFirst: boolean,
+  vx: number,
+  vy: number,
+  vz: number,
+  enough: number,
+): number {
+  if (round.circular[piece] === 0) return -1;
+  const { world } = round;
+  const s = round.start[piece]!;
+  let nx = world[s + 3]!;
+  let ny = world[s + 4]!;
+  let nz = world[s + 5]!;
+  const half = Math.sqrt(nx * nx + ny * ny + nz * nz);
+  const scale = (nx * vx + ny * vy + nz * vz > 0 ? -1 : 1) / half;
+  nx *= scale;
+  ny *= scale;
+  nz *= scale;
+  supportAt(other.world, other.start[otherPiece]!, other.core[otherPiece]!, other.corners[otherPiece]!, other.discs[otherPiece]!, -nx, -ny, -nz, FACE, 0);
+  const x = FACE[0]! - world[s]!;
+  const y = FACE[1]! - world[s + 1]!;
+  const z = FACE[2]! - world[s + 2]!;
+  const along = x * nx + y * ny + z * nz;
+  const gap = along - half;
+  if (!(gap > 1e-6)) return -1;
+  if (gap > enough) return Infinity;
+  const px = x - along * nx;
+  const py = y - along * ny;
+  const pz = z - along * nz;
+  const r = round.spineRadius[piece]!;
+  if (px * px + py * py + pz * pz > r * r) return -1;
+  const mine = roundFirst ? closestA : closestB;
+  const its = roundFirst ? closestB : closestA;
+  its[0] = FACE[0]!;
+  its[1] = FACE[1]!;
+  its[2] = FACE[2]!;
+  mine[0] = FACE[0]! - gap * nx;
+  mine[1] = FACE[1]! - gap * ny;
+  mine[2] = FACE[2]! - gap * nz;
+  return gap;
+}

@@ -1,5 +1,5 @@
 import type { Body } from "./body.ts";
-import { CORE_BOX, CORE_DISCS, CORE_POINTS, CORE_PRISM } from "./compile.ts";
+import { CORE_BOX, CORE_DISCS, CORE_POINTS, CORE_PRISM, CORE_RING } from "./compile.ts";
 
 /** Below this a length squared has lost its digits: a disc seen so nearly square on is met at its centre. */
 export const NOTHING = 1e-140;
@@ -122,6 +122,7 @@ export function supportAt(
     out[at + 2] = world[best + 2]!;
     return best - s;
   }
+  if (core === CORE_RING) return supportOfRing(world, s, corners, dx, dy, dz, out, at);
   if (core === CORE_DISCS) return supportOfDiscs(world, s, corners, discs, dx, dy, dz, out, at);
   // A cylinder: the end that faces the direction, and the farthest point of its rim.
   const hx = world[s + 3]!;
@@ -145,6 +146,66 @@ export function supportAt(
   out[at + 1] = world[s + 1]! + side * hy + p * uy + q * vy;
   out[at + 2] = world[s + 2]! + side * hz + p * uz + q * vz;
   return -1;
+}
+
+/**
+ * The foremost corner of a convex ring is where a walk from any corner ends; it starts where the direction's angle about the
+ * ring says, as if the corners were spread evenly.
+ */
+function supportOfRing(
+  world: Float64Array,
+  s: number,
+  n: number,
+  dx: number,
+  dy: number,
+  dz: number,
+  out: Float64Array,
+  at: number,
+): number {
+  const o = s + 3 * n;
+  const x = world[o + 3]! * dx + world[o + 4]! * dy + world[o + 5]! * dz;
+  const y = world[o + 6]! * dx + world[o + 7]! * dy + world[o + 8]! * dz;
+  const whole = Math.abs(x) + Math.abs(y);
+  // Quarters of a turn, 0 … 4, by the rhombus rather than the circle: close enough to start from.
+  let turn = 0;
+  if (whole > NOTHING) {
+    turn = y / whole;
+    turn = x < 0 ? 2 - turn : y < 0 ? 4 + turn : turn;
+  }
+  let i = Math.round((turn * n) / 4);
+  if (i >= n) i -= n;
+  let p = s + 3 * i;
+  let most = world[p]! * dx + world[p + 1]! * dy + world[p + 2]! * dz;
+  let walked = 0;
+  for (; walked < n; walked++) {
+    const next = p + 3 === o ? s : p + 3;
+    const along = world[next]! * dx + world[next + 1]! * dy + world[next + 2]! * dz;
+    if (!(along > most)) break;
+    most = along;
+    p = next;
+  }
+  if (walked === 0) {
+    for (; walked < n; walked++) {
+      const next = p === s ? o - 3 : p - 3;
+      const along = world[next]! * dx + world[next + 1]! * dy + world[next + 2]! * dz;
+      if (!(along > most)) break;
+      most = along;
+      p = next;
+    }
+  }
+  const ox = world[o]!;
+  const oy = world[o + 1]!;
+  const oz = world[o + 2]!;
+  if (ox * dx + oy * dy + oz * dz > 0) {
+    out[at] = world[p]! + ox;
+    out[at + 1] = world[p + 1]! + oy;
+    out[at + 2] = world[p + 2]! + oz;
+    return p - s + 1;
+  }
+  out[at] = world[p]!;
+  out[at + 1] = world[p + 1]!;
+  out[at + 2] = world[p + 2]!;
+  return p - s;
 }
 
 function supportOfDiscs(
