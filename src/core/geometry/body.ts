@@ -32,6 +32,8 @@ export interface Body {
   readonly spread: Float64Array;
   /** World box of each node, grown by the ball radius: low x, y, z, high x, y, z. */
   readonly boxes: Float64Array;
+  /** The same boxes as middle x, y, z and half extents x, y, z. */
+  readonly middles: Float64Array;
   /** 1 for a right circular cylinder. */
   readonly circular: Uint8Array;
   /**
@@ -77,6 +79,7 @@ export function buildBody(pieces: readonly Piece[]): Body {
     leafOf: new Int32Array(count),
     spread: new Float64Array(nodes),
     boxes: new Float64Array(6 * nodes),
+    middles: new Float64Array(6 * nodes),
     circular: Uint8Array.from(compiled, (c) => (c.core === CORE_ROUND && isRightCircular(c.vectors) ? 1 : 0)),
     spine: new Int32Array(count).fill(-1),
     spinePoints: Int32Array.from(compiled, (c) => (c.spine ? c.spine.points.length - 2 : 0)),
@@ -201,7 +204,7 @@ function pieceBox(body: Body, piece: number, out: Float64Array, at: number): voi
  */
 export function setPose(body: Body, pose: Pose): void {
   body.pose = pose;
-  const { local, world, placed, boxes, second, leafPiece } = body;
+  const { local, world, placed, boxes, middles, second, leafPiece } = body;
   const m = pose.rotation;
   const [m0, m1, m2, m3, m4, m5, m6, m7, m8] = [m[0]!, m[1]!, m[2]!, m[3]!, m[4]!, m[5]!, m[6]!, m[7]!, m[8]!];
   const [ax, ay, az] = pose.at;
@@ -216,16 +219,21 @@ export function setPose(body: Body, pose: Pose): void {
   }
   for (let node = second.length - 1; node >= 0; node--) {
     const right = second[node]!;
-    if (right === 0) {
-      pieceBox(body, leafPiece[node]!, boxes, 6 * node);
-      continue;
-    }
     const o = 6 * node;
-    const l = o + 6;
-    const r = 6 * right;
+    if (right === 0) pieceBox(body, leafPiece[node]!, boxes, o);
+    else {
+      const l = o + 6;
+      const r = 6 * right;
+      for (let k = 0; k < 3; k++) {
+        boxes[o + k] = Math.min(boxes[l + k]!, boxes[r + k]!);
+        boxes[o + 3 + k] = Math.max(boxes[l + 3 + k]!, boxes[r + 3 + k]!);
+      }
+    }
     for (let k = 0; k < 3; k++) {
-      boxes[o + k] = Math.min(boxes[l + k]!, boxes[r + k]!);
-      boxes[o + 3 + k] = Math.max(boxes[l + 3 + k]!, boxes[r + 3 + k]!);
+      const low = boxes[o + k]!;
+      const high = boxes[o + 3 + k]!;
+      middles[o + k] = (low + high) / 2;
+      middles[o + 3 + k] = (high - low) / 2;
     }
   }
 }

@@ -74,24 +74,27 @@ function writeTravel(travel: TravelBox | null): Float64Array | null {
  * else minus the least width of their overlap.
  */
 function boxKey(p: Float64Array, i: number, q: Float64Array, j: number): number {
-  const x = Math.max(q[j]! - p[i + 3]!, p[i]! - q[j + 3]!);
-  const y = Math.max(q[j + 1]! - p[i + 4]!, p[i + 1]! - q[j + 4]!);
-  const z = Math.max(q[j + 2]! - p[i + 5]!, p[i + 2]! - q[j + 5]!);
-  if (x > 0) return x * x + (y > 0 ? y * y : 0) + (z > 0 ? z * z : 0);
-  if (y > 0) return y * y + (z > 0 ? z * z : 0);
-  if (z > 0) return z * z;
-  return x > y ? (x > z ? x : z) : y > z ? y : z;
+  const x = Math.abs(p[i]! - q[j]!) - (p[i + 3]! + q[j + 3]!);
+  const y = Math.abs(p[i + 1]! - q[j + 1]!) - (p[i + 4]! + q[j + 4]!);
+  const z = Math.abs(p[i + 2]! - q[j + 2]!) - (p[i + 5]! + q[j + 5]!);
+  // Twice the positive part, without a branch.
+  const u = x + Math.abs(x);
+  const v = y + Math.abs(y);
+  const w = z + Math.abs(z);
+  const square = u * u + v * v + w * w;
+  return square > 0 ? square / 4 : x > y ? (x > z ? x : z) : y > z ? y : z;
 }
 
 /** The same where the second box may move by `travel`. */
 function movingBoxKey(p: Float64Array, i: number, q: Float64Array, j: number, travel: Float64Array): number {
-  const x = Math.max(q[j]! + travel[0]! - p[i + 3]!, p[i]! - q[j + 3]! - travel[3]!);
-  const y = Math.max(q[j + 1]! + travel[1]! - p[i + 4]!, p[i + 1]! - q[j + 4]! - travel[4]!);
-  const z = Math.max(q[j + 2]! + travel[2]! - p[i + 5]!, p[i + 2]! - q[j + 5]! - travel[5]!);
-  if (x > 0) return x * x + (y > 0 ? y * y : 0) + (z > 0 ? z * z : 0);
-  if (y > 0) return y * y + (z > 0 ? z * z : 0);
-  if (z > 0) return z * z;
-  return x > y ? (x > z ? x : z) : y > z ? y : z;
+  const x = Math.abs(p[i]! - q[j]! - (travel[0]! + travel[3]!) / 2) - (p[i + 3]! + q[j + 3]! + (travel[3]! - travel[0]!) / 2);
+  const y = Math.abs(p[i + 1]! - q[j + 1]! - (travel[1]! + travel[4]!) / 2) - (p[i + 4]! + q[j + 4]! + (travel[4]! - travel[1]!) / 2);
+  const z = Math.abs(p[i + 2]! - q[j + 2]! - (travel[2]! + travel[5]!) / 2) - (p[i + 5]! + q[j + 5]! + (travel[5]! - travel[2]!) / 2);
+  const u = x + Math.abs(x);
+  const v = y + Math.abs(y);
+  const w = z + Math.abs(z);
+  const square = u * u + v * v + w * w;
+  return square > 0 ? square / 4 : x > y ? (x > z ? x : z) : y > z ? y : z;
 }
 
 /** Keys above this cannot beat `best`. */
@@ -363,8 +366,8 @@ function searchTrees(
   doneA: number,
   doneB: number,
 ): number {
-  const p = a.boxes;
-  const q = b.boxes;
+  const p = a.middles;
+  const q = b.middles;
   const secondA = a.second;
   const secondB = b.second;
   let best = bound;
