@@ -413,7 +413,9 @@ function searchTrees(
         if (second <= limit) {
           // The nearer one is taken at once, the other waits.
           if (top === stackBound.length) growStack();
-          if (first <= second) {
+          const near1 = Math.abs(p[6 * m1]! - q[6 * n1]!) + Math.abs(p[6 * m1 + 1]! - q[6 * n1 + 1]!) + Math.abs(p[6 * m1 + 2]! - q[6 * n1 + 2]!);
+          const near2 = Math.abs(p[6 * m2]! - q[6 * n2]!) + Math.abs(p[6 * m2 + 1]! - q[6 * n2 + 1]!) + Math.abs(p[6 * m2 + 2]! - q[6 * n2 + 2]!);
+          if (first < 0 && second < 0 ? near1 <= near2 : first <= second) {
             stack[2 * top] = m2;
             stack[2 * top + 1] = n2;
             stackBound[top++] = second;

@@ -182,14 +182,14 @@ interface Station {
 
 /**
  * The tube around a path as convex pieces: straight and mitred cylinders, and a ball at nodes of three or more legs.
- * Surface error: the centre line within 0.02 mm of the true arcs; straight parts exact.
+ * Surface error: the centre line within `chordError` (mm; 0.02 for gaps, more for pictures and litres) of the true arcs; straight parts exact.
  */
-export function tubePieces(path: TubePath): TubePiece[] {
+export function tubePieces(path: TubePath, chordError = CHORD_ERROR): TubePiece[] {
   const stations: Station[][] = path.legs.map(() => []);
   const startCaps = path.legs.map(() => null as Station[] | null);
   const endCaps = path.legs.map(() => null as Station[] | null);
   for (const bend of path.bends) {
-    const [first, second] = bendStations(path, bend);
+    const [first, second] = bendStations(path, bend, chordError);
     const [i, j] = bend.legs;
     (path.legs[i]!.to === bend.node ? endCaps : startCaps)[i] = first;
     (path.legs[j]!.from === bend.node ? startCaps : endCaps)[j] = second;
@@ -225,7 +225,7 @@ export function tubePieces(path: TubePath): TubePiece[] {
  * Vertices lie on a circle 0.02 mm outside the arc, chords touch one no more than 0.02 mm inside; the first and last vertices lie on the
  * straights' own lines, so straights stay exact.
  */
-function bendStations(path: TubePath, bend: TubeBend): [Station[], Station[]] {
+function bendStations(path: TubePath, bend: TubeBend, chordError: number): [Station[], Station[]] {
   const [i, j] = bend.legs;
   const node = path.nodes.get(bend.node)!.at;
   const forwardIn = path.legs[i]!.to === bend.node;
@@ -239,18 +239,18 @@ function bendStations(path: TubePath, bend: TubeBend): [Station[], Station[]] {
   const middleNormal = unit([into[0] + out[0], into[1] + out[1], into[2] + out[2]]);
 
   const vertices: { at: Vec3; normal: Vec3; angle: number }[] = [];
-  const lead = r > 0 ? Math.acos(r / (r + CHORD_ERROR)) : Infinity;
+  const lead = r > 0 ? Math.acos(r / (r + chordError)) : Infinity;
   if (2 * lead >= angle) {
     vertices.push({ at: node, normal: middleNormal, angle: angle / 2 });
   } else {
-    const widest = 2 * Math.acos((r - Math.min(CHORD_ERROR, r / 2)) / (r + CHORD_ERROR));
+    const widest = 2 * Math.acos((r - Math.min(chordError, r / 2)) / (r + chordError));
     let chords = Math.max(1, Math.ceil((angle - 2 * lead) / widest));
     if (chords % 2 === 1) chords++;
     const tangentPoint = move(node, into, -bend.tangent);
     // unit from the tangent point to the centre of the arc: square to `into`, toward `out`
     const inward = unit([out[0] - into[0] * dot(into, out), out[1] - into[1] * dot(into, out), out[2] - into[2] * dot(into, out)]);
     const centre = move(tangentPoint, inward, r);
-    const ring = r + CHORD_ERROR;
+    const ring = r + chordError;
     for (let k = 0; k <= chords; k++) {
       const a = lead + ((angle - 2 * lead) * k) / chords;
       const [s, c] = [Math.sin(a), Math.cos(a)];

@@ -1,15 +1,12 @@
 import type { Vec2 } from "../frames.ts";
 import type { Piece } from "../geometry/piece.ts";
-import { pieceSection } from "../geometry/section.ts";
 import type { Space } from "../layout/schema.ts";
 import { freeArea, type ScanRegion } from "./free-area.ts";
+import { growPiece } from "./grown-section.ts";
 import { integrate } from "./integrate.ts";
 import { insetStretches, overlapStretches } from "./stretches.ts";
 
 const EVERYWHERE = 1e7;
-/** Flattening of round sections, mm; the area lost is below 0.02 % of a round part's own. */
-const SECTION_TOLERANCE = 0.02;
-
 /** Litres of a space: the outlines alone, and what wall gap and parts leave. */
 export interface SpaceVolume {
   readonly grossLitres: number;
@@ -18,7 +15,7 @@ export interface SpaceVolume {
 
 /**
  * Volume inside a space's outlines less `wallGap` and less every piece grown by `partGap`: integrated from sections square to x, whose areas
- * are exact for flat faces and flattened within 0.02 mm for round ones. The growth is a true 3D one (a ball about every surface point).
+ * are exact for flat faces and faceted without loss of area for round ones. The growth is a true 3D one (a ball about every surface point).
  *
  * @param space outlines in the car frame, mm
  * @param obstacles pieces in the car frame, mm, as drawn (no movement, no tolerance)
@@ -31,25 +28,23 @@ export function measureSpace(space: Space, obstacles: readonly Piece[]): SpaceVo
   const outlineBreaks = [...(space.top ?? []), ...(space.side ?? [])].map((p) => p[0]);
   const gross = integrate((x) => freeArea(regionAt(space, x, 0), []), from, to, outlineBreaks);
 
-  const near = obstacles
-    .map((piece) => ({ ...piece, radius: piece.radius + space.partGap }))
-    .map((piece) => ({ piece, box: boxOf(piece) }))
-    .filter(({ box }) => box.high[0] > from && box.low[0] < to);
+  const near = obstacles.map((piece) => ({ piece, grown: growPiece(piece, space.partGap) })).filter(({ grown }) => reaches(space, grown.low, grown.high));
   const breaks = [...outlineBreaks];
   if (space.wallGap > 0) for (const x of outlineBreaks) breaks.push(x - space.wallGap, x + space.wallGap);
-  for (const { piece, box } of near) {
-    breaks.push(box.low[0], box.high[0]);
+  for (const { piece, grown } of near) {
+    breaks.push(grown.low[0], grown.high[0]);
     // flat faces grown by the gap end abruptly: their corners' stations are where the section's area bends
-    if (piece.points.length <= 16) for (const p of piece.points) breaks.push(p[0] - piece.radius, p[0], p[0] + piece.radius);
+    const radius = piece.radius + space.partGap;
+    if (piece.points.length <= 16) for (const p of piece.points) breaks.push(p[0] - radius, p[0], p[0] + radius);
   }
   const free = integrate(
     (x) => {
       const region = regionAt(space, x, space.wallGap);
       if (!(region.to > region.from)) return 0;
       const cuts: Vec2[][] = [];
-      for (const { piece, box } of near) {
-        if (x <= box.low[0] || x >= box.high[0] || box.high[1] <= region.from || box.low[1] >= region.to) continue;
-        const cut = pieceSection(piece, "x", x, SECTION_TOLERANCE);
+      for (const { grown } of near) {
+        if (x <= grown.low[0] || x >= grown.high[0] || grown.high[1] <= region.from || grown.low[1] >= region.to) continue;
+        const cut = grown.sectionAt(x);
         if (cut.length >= 3) cuts.push(cut);
       }
       return freeArea(region, cuts);
@@ -99,19 +94,14 @@ function regionAt(space: Space, x: number, gap: number): ScanRegion {
   return { from, to, breaks: [...across, ...rearBreaks], stretchesAt };
 }
 
-function boxOf(piece: Piece): { low: [number, number, number]; high: [number, number, number] } {
-  const low: [number, number, number] = [Infinity, Infinity, Infinity];
-  const high: [number, number, number] = [-Infinity, -Infinity, -Infinity];
-  for (let axis = 0 as 0 | 1 | 2; axis < 3; axis++) {
-    for (const p of piece.points) {
-      low[axis] = Math.min(low[axis], p[axis]! - piece.radius);
-      high[axis] = Math.max(high[axis], p[axis]! + piece.radius);
-    }
-    for (const d of piece.discs) {
-      const reach = Math.hypot(d.u[axis]!, d.v[axis]!) + piece.radius;
-      low[axis] = Math.min(low[axis], d.centre[axis]! - reach);
-      high[axis] = Math.max(high[axis], d.centre[axis]! + reach);
-    }
-  }
-  return { low, high };
+/** True where a box and the space's own box meet: everything else cannot cut it. */
+function reaches(space: Space, low: readonly number[], high: readonly number[]): boolean {
+  const views = [[space.top, 0, 1], [space.side, 0, 2], [space.rear, 1, 2]] as const;
+  return views.every(([outline, u, v]) => {
+    if (!outline) return true;
+    return [[0, u], [1, v]].every(([k, axis]) => {
+      const values = outline.map((p) => p[k as 0 | 1]);
+      return high[axis!]! > Math.min(...values) && low[axis!]! < Math.max(...values);
+    });
+  });
 }

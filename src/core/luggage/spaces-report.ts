@@ -27,6 +27,9 @@ export function spacesReport(layout: Layout): SpaceReport[] {
   });
 }
 
+/** Chords of a bent pipe lie within this of its arcs, as far inside as outside, mm: its volume stays, its pieces are few. */
+const TUBE_ERROR = 0.5;
+
 /** Everything that takes room, in the car frame, as drawn. */
 export function obstaclesOf(layout: Layout): Piece[] {
   const pieces: Piece[] = [];
@@ -38,7 +41,7 @@ export function obstaclesOf(layout: Layout): Piece[] {
       if (!(error instanceof GeometryError)) throw error; // named in the body section
     }
   }
-  const tube = (input: Parameters<typeof tubePath>[0]) => pieces.push(...tubePieces(tubePath(input)).map((t) => t.piece));
+  const tube = (input: Parameters<typeof tubePath>[0]) => pieces.push(...tubePieces(tubePath(input), TUBE_ERROR).map((t) => t.piece));
   for (const run of layout.runs) tube(run);
   for (const shaft of layout.shafts) {
     if (shaft.diameter !== undefined) tube({ diameter: shaft.diameter, bendRadius: 0, nodes: [{ key: "a", at: shaft.inboard }, { key: "b", at: shaft.outboard }], legs: [] });
