@@ -1,4 +1,4 @@
-import { compilePiece, CORE_BOX, CORE_DISCS, CORE_PRISM, CORE_RING, CORE_ROUND, halfOf, isRightCircular } from "./compile.ts";
+import { compilePiece, CORE_BOX, CORE_DISCS, CORE_POINTS, CORE_PRISM, CORE_RING, CORE_ROUND, halfOf, isRightCircular } from "./compile.ts";
 import { IDENTITY, type Piece, type Pose } from "./piece.ts";
 import type { Facets } from "./facets.ts";
 
@@ -43,6 +43,9 @@ export interface Body {
   readonly spine: Int32Array;
   readonly spinePoints: Int32Array;
   readonly spineRadius: Float64Array;
+  /** Both ends, in `world`, of the segment that a piece's core or spine is (a point has one end twice); -1 for anything else. */
+  readonly segmentFrom: Int32Array;
+  readonly segmentTo: Int32Array;
   /** Half edge lengths of a rectangular box, three a piece; zero for anything else. */
   readonly boxHalf: Float64Array;
   /** Facets of a piece's core, local, made when its depth is first asked for; null where it has none. */
@@ -84,6 +87,8 @@ export function buildBody(pieces: readonly Piece[]): Body {
     spine: new Int32Array(count).fill(-1),
     spinePoints: Int32Array.from(compiled, (c) => (c.spine ? c.spine.points.length - 2 : 0)),
     spineRadius: Float64Array.from(compiled, (c) => c.spine?.radius ?? 0),
+    segmentFrom: new Int32Array(count).fill(-1),
+    segmentTo: new Int32Array(count).fill(-1),
     boxHalf: Float64Array.from(compiled.flatMap((c) => (c.core === CORE_BOX ? halfOf(c.vectors) : [0, 0, 0]))),
     facets: new Array<Facets | null | undefined>(count).fill(undefined),
     pose: IDENTITY,
@@ -96,8 +101,16 @@ export function buildBody(pieces: readonly Piece[]): Body {
       body.local.set(v, at);
       at += 3;
     }
+    if (c.core === CORE_POINTS && c.corners <= 2) {
+      body.segmentFrom[i] = body.start[i]!;
+      body.segmentTo[i] = body.start[i]! + 3 * (c.corners - 1);
+    }
     if (!c.spine) return;
     body.spine[i] = at;
+    if (body.spinePoints[i] === 2) {
+      body.segmentFrom[i] = at;
+      body.segmentTo[i] = at + 3;
+    }
     body.placed.fill(1, at / 3, at / 3 + c.spine.points.length);
     for (const v of [...c.spine.points, ...c.spine.normals]) {
       body.local.set(v, at);

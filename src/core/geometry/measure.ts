@@ -117,12 +117,6 @@ function onRoundSide(body: Body, piece: number, x: number, y: number, z: number)
   return high <= ON_SIDE;
 }
 
-/** A spine of two points or a core of one or two: the ends of a segment in `world`, or -1. */
-function segmentStart(body: Body, piece: number): number {
-  if (body.spine[piece]! >= 0) return body.spinePoints[piece] === 2 ? body.spine[piece]! : -1;
-  return body.corners[piece]! <= 2 && body.discs[piece] === 0 ? body.start[piece]! : -1;
-}
-
 /** Whether a point is within a segment, up to a billionth of its length. */
 function onSegment(world: Float64Array, at: number, to: number, p: Float64Array): boolean {
   const x = world[to]! - world[at]!;
@@ -176,13 +170,17 @@ function pairDistance(a: Body, i: number, b: Body, j: number, travel: Float64Arr
   const ra = spineA ? a.spineRadius[i]! : 0;
   const rb = spineB ? b.spineRadius[j]! : 0;
   const within = enough + ra + rb;
-  const s = travel === null ? segmentStart(a, i) : -1;
-  const t = travel === null ? segmentStart(b, j) : -1;
-  const sEnd = spineA || a.corners[i] === 2 ? s + 3 : s;
-  const tEnd = spineB || b.corners[j] === 2 ? t + 3 : t;
+  const s = travel === null ? a.segmentFrom[i]! : -1;
+  const t = travel === null ? b.segmentFrom[j]! : -1;
+  const sEnd = a.segmentTo[i]!;
+  const tEnd = b.segmentTo[j]!;
   let core: number;
   if (s >= 0 && t >= 0) {
-    core = segmentSquare(a.world, s, sEnd, b.world, t, tEnd);
+    // Measured just before (see measurePair): the points are there, the distance is between them.
+    const x = closestA[0]! - closestB[0]!;
+    const y = closestA[1]! - closestB[1]!;
+    const z = closestA[2]! - closestB[2]!;
+    core = x * x + y * y + z * z;
   } else if (s >= 0 && b.boxHalf[3 * j]! > 0) {
     core = segmentBoxSquare(a.world, s, sEnd, b.world, b.start[j]!, b.boxHalf, 3 * j, closestA, closestB);
   } else if (t >= 0 && a.boxHalf[3 * i]! > 0) {
@@ -249,9 +247,15 @@ function measurePair(
 ): number {
   const ra = a.radius[i]!;
   const rb = b.radius[j]!;
-  const grown = ra + rb;
-  const enough = best + grown + SLACK;
-  if (out.pieceA >= 0 && (a.corners[i]! > 2 || b.corners[j]! > 2)) {
+  const enough = best + ra + rb + SLACK;
+  const s = a.segmentFrom[i]!;
+  const t = b.segmentFrom[j]!;
+  if (travel === null && s >= 0 && t >= 0) {
+    // Two segments, or the spines that hold round pieces: most end here.
+    const within = enough + a.spineRadius[i]! + b.spineRadius[j]!;
+    const square = segmentSquare(a.world, s, a.segmentTo[i]!, b.world, t, b.segmentTo[j]!);
+    if (square > within * within && within > 0) return best;
+  } else if (out.pieceA >= 0 && (travel !== null || best < 0 || !((s >= 0 && b.boxHalf[3 * j]! > 0) || (t >= 0 && a.boxHalf[3 * i]! > 0)))) {
     // The direction of the best pair so far, as a guess of what parts this one too (or leaves it less deep): any slab
     // bounds the signed distance from below. It prunes, it never decides.
     const gap = slabAlong(a, i, b, j, travel, DIRECTION[0]!, DIRECTION[1]!, DIRECTION[2]!);
@@ -413,9 +417,7 @@ function searchTrees(
         if (second <= limit) {
           // The nearer one is taken at once, the other waits.
           if (top === stackBound.length) growStack();
-          const near1 = Math.abs(p[6 * m1]! - q[6 * n1]!) + Math.abs(p[6 * m1 + 1]! - q[6 * n1 + 1]!) + Math.abs(p[6 * m1 + 2]! - q[6 * n1 + 2]!);
-          const near2 = Math.abs(p[6 * m2]! - q[6 * n2]!) + Math.abs(p[6 * m2 + 1]! - q[6 * n2 + 1]!) + Math.abs(p[6 * m2 + 2]! - q[6 * n2 + 2]!);
-          if (first < 0 && second < 0 ? near1 <= near2 : first <= second) {
+          if (first <= second) {
             stack[2 * top] = m2;
             stack[2 * top + 1] = n2;
             stackBound[top++] = second;
