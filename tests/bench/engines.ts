@@ -26,17 +26,17 @@ export function rivalSearch(rival: Rival, workload: Workload, bodies: readonly B
       const n = stack.pop()!;
       const m = stack.pop()!;
       if (bound > best) continue;
-      const right = a.second[m]!;
-      const left = b.second[n]!;
+      const right = a.tree[2 * m]!;
+      const left = b.tree[2 * n]!;
       if (right === 0 && left === 0) {
-        const d = rival.distance(placesA[a.leafPiece[m]!], placesB[b.leafPiece[n]!], Math.max(best, 0));
+        const d = rival.distance(placesA[a.tree[2 * m + 1]!], placesB[b.tree[2 * n + 1]!], Math.max(best, 0));
         if (d < found && d <= best) {
           found = d;
           best = d;
         }
         continue;
       }
-      const splitA = left === 0 || (right !== 0 && a.spread[m]! >= b.spread[n]!);
+      const splitA = left === 0 || (right !== 0 && a.middles[8 * m + 6]! >= b.middles[8 * n + 6]!);
       const m1 = splitA ? m + 1 : m;
       const m2 = splitA ? right : m;
       const n1 = splitA ? n : n + 1;

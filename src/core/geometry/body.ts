@@ -1,4 +1,31 @@
-import { compilePiece, CORE_BOX, CORE_DISCS, CORE_POINTS, CORE_PRISM, CORE_RING, CORE_ROUND, halfOf, isRightCircular } from "./compile.ts";
+import {
+  CIRCULAR,
+  compilePiece,
+  CORE,
+  CORE_BOX,
+  CORE_DISCS,
+  CORE_POINTS,
+  CORE_PRISM,
+  CORE_RING,
+  CORE_ROUND,
+  CORNERS,
+  DISCS,
+  FACTS,
+  HALF,
+  halfOf,
+  isRightCircular,
+  LEAF,
+  NODE,
+  RECTANGULAR,
+  SEGMENT_FROM,
+  SEGMENT_TO,
+  SIZES,
+  SPINE,
+  SPINE_POINTS,
+  START,
+  type Compiled,
+} from "./compile.ts";
+import type { Vec3 } from "../frames.ts";
 import { IDENTITY, type Piece, type Pose } from "./piece.ts";
 import type { Facets } from "./facets.ts";
 
@@ -7,47 +34,25 @@ import type { Facets } from "./facets.ts";
  * A body is mutable in one way only: `setPose` moves it.
  */
 
+/** Few arrays, each with all of one piece or node side by side: a pair of bodies is measured in the time of a few cache misses. */
 export interface Body {
   /** Number of pieces. */
   readonly count: number;
   readonly pieces: readonly Piece[];
-  /** CORE_… of each piece. */
-  readonly core: Uint8Array;
-  /** Where the piece's numbers begin in `local` and `world`. */
-  readonly start: Int32Array;
-  /** Points of the piece: corners, or points in the ring of a prism. */
-  readonly corners: Int32Array;
-  readonly discs: Int32Array;
-  readonly radius: Float64Array;
+  /** `FACTS` whole numbers a piece: see compile.ts. */
+  readonly facts: Int32Array;
+  /** `SIZES` lengths a piece: see compile.ts. */
+  readonly sizes: Float64Array;
   readonly local: Float64Array;
   readonly world: Float64Array;
   /** One entry for each triple of `local`: 1 a point, 0 a vector that turns but does not move. */
   readonly placed: Uint8Array;
-  /** Tree in pre-order: the first child of node n is n + 1, the second is `second[n]`; 0 marks a leaf. */
-  readonly second: Int32Array;
-  /** Piece of a leaf. */
-  readonly leafPiece: Int32Array;
-  readonly leafOf: Int32Array;
-  /** Size of each node where the pieces were made, mm: the larger of two nodes is split first. */
-  readonly spread: Float64Array;
+  /** Tree in pre-order, two numbers a node: its second child (the first is the next node; 0 marks a leaf), the piece of a leaf. */
+  readonly tree: Int32Array;
   /** World box of each node, grown by the ball radius: low x, y, z, high x, y, z. */
   readonly boxes: Float64Array;
-  /** The same boxes as middle x, y, z and half extents x, y, z. */
+  /** The same, `NODE` numbers a node: see compile.ts. */
   readonly middles: Float64Array;
-  /** 1 for a right circular cylinder. */
-  readonly circular: Uint8Array;
-  /**
-   * Where the spine of a round piece begins in `world`, -1 without one: points whose hull grown by `spineRadius` holds the
-   * piece, and whose surface is that of the piece between two end planes (a point and an outward normal each).
-   */
-  readonly spine: Int32Array;
-  readonly spinePoints: Int32Array;
-  readonly spineRadius: Float64Array;
-  /** Both ends, in `world`, of the segment that a piece's core or spine is (a point has one end twice); -1 for anything else. */
-  readonly segmentFrom: Int32Array;
-  readonly segmentTo: Int32Array;
-  /** Half edge lengths of a rectangular box, three a piece; zero for anything else. */
-  readonly boxHalf: Float64Array;
   /** Facets of a piece's core, local, made when its depth is first asked for; null where it has none. */
   readonly facets: (Facets | null | undefined)[];
   pose: Pose;
@@ -69,53 +74,20 @@ export function buildBody(pieces: readonly Piece[]): Body {
   const body: Body = {
     count,
     pieces,
-    core: Uint8Array.from(compiled, (c) => c.core),
-    start: new Int32Array(count),
-    corners: Int32Array.from(compiled, (c) => c.corners),
-    discs: Int32Array.from(compiled, (c) => c.discs),
-    radius: Float64Array.from(pieces, (p) => p.radius),
+    facts: new Int32Array(FACTS * count),
+    sizes: new Float64Array(SIZES * count),
     local: new Float64Array(3 * triples),
     world: new Float64Array(3 * triples),
     placed: new Uint8Array(triples),
-    second: new Int32Array(nodes),
-    leafPiece: new Int32Array(nodes).fill(-1),
-    leafOf: new Int32Array(count),
-    spread: new Float64Array(nodes),
+    tree: new Int32Array(2 * nodes),
     boxes: new Float64Array(6 * nodes),
-    middles: new Float64Array(6 * nodes),
-    circular: Uint8Array.from(compiled, (c) => (c.core === CORE_ROUND && isRightCircular(c.vectors) ? 1 : 0)),
-    spine: new Int32Array(count).fill(-1),
-    spinePoints: Int32Array.from(compiled, (c) => (c.spine ? c.spine.points.length - 2 : 0)),
-    spineRadius: Float64Array.from(compiled, (c) => c.spine?.radius ?? 0),
-    segmentFrom: new Int32Array(count).fill(-1),
-    segmentTo: new Int32Array(count).fill(-1),
-    boxHalf: Float64Array.from(compiled.flatMap((c) => (c.core === CORE_BOX ? halfOf(c.vectors) : [0, 0, 0]))),
+    middles: new Float64Array(NODE * nodes),
     facets: new Array<Facets | null | undefined>(count).fill(undefined),
     pose: IDENTITY,
   };
   let at = 0;
   compiled.forEach((c, i) => {
-    body.start[i] = at;
-    body.placed.fill(1, at / 3, at / 3 + c.placed.length);
-    for (const v of [...c.placed, ...c.vectors]) {
-      body.local.set(v, at);
-      at += 3;
-    }
-    if (c.core === CORE_POINTS && c.corners <= 2) {
-      body.segmentFrom[i] = body.start[i]!;
-      body.segmentTo[i] = body.start[i]! + 3 * (c.corners - 1);
-    }
-    if (!c.spine) return;
-    body.spine[i] = at;
-    if (body.spinePoints[i] === 2) {
-      body.segmentFrom[i] = at;
-      body.segmentTo[i] = at + 3;
-    }
-    body.placed.fill(1, at / 3, at / 3 + c.spine.points.length);
-    for (const v of [...c.spine.points, ...c.spine.normals]) {
-      body.local.set(v, at);
-      at += 3;
-    }
+    at = writePiece(body, i, c, at);
   });
   // Boxes of the pieces where they were made decide how the tree is split; any pose may use it.
   body.world.set(body.local);
@@ -125,17 +97,59 @@ export function buildBody(pieces: readonly Piece[]): Body {
   setPose(body, IDENTITY);
   for (let node = 0; node < nodes; node++) {
     const o = 6 * node;
-    const size = [0, 1, 2].map((k) => body.boxes[o + 3 + k]! - body.boxes[o + k]!);
-    body.spread[node] = Math.hypot(...size);
+    body.middles[NODE * node + 6] = Math.hypot(...[0, 1, 2].map((k) => body.boxes[o + 3 + k]! - body.boxes[o + k]!));
   }
   return body;
+}
+
+/** Writes what is known of a piece, its numbers from `at` on; returns where the next begin. */
+function writePiece(body: Body, i: number, c: Compiled, at: number): number {
+  const { facts, sizes, local, placed } = body;
+  const put = (list: readonly Vec3[], point: 0 | 1): void => {
+    placed.fill(point, at / 3, at / 3 + list.length);
+    for (const v of list) {
+      local.set(v, at);
+      at += 3;
+    }
+  };
+  const f = FACTS * i;
+  const from = at;
+  facts[f + CORE] = c.core;
+  facts[f + START] = from;
+  facts[f + CORNERS] = c.corners;
+  facts[f + DISCS] = c.discs;
+  facts[f + SPINE] = -1;
+  facts[f + SEGMENT_FROM] = -1;
+  facts[f + SEGMENT_TO] = -1;
+  facts[f + CIRCULAR] = c.core === CORE_ROUND && isRightCircular(c.vectors) ? 1 : 0;
+  sizes[SIZES * i] = c.radius;
+  put(c.placed, 1);
+  put(c.vectors, 0);
+  if (c.core === CORE_POINTS && c.corners <= 2) {
+    facts[f + SEGMENT_FROM] = from;
+    facts[f + SEGMENT_TO] = from + 3 * (c.corners - 1);
+  }
+  const half = c.core === CORE_BOX ? halfOf(c.vectors) : [0, 0, 0];
+  sizes.set(half, SIZES * i + HALF);
+  facts[f + RECTANGULAR] = half[0]! > 0 ? 1 : 0;
+  if (!c.spine) return at;
+  facts[f + SPINE] = at;
+  facts[f + SPINE_POINTS] = c.spine.points.length - 2;
+  sizes[SIZES * i + 1] = c.spine.radius;
+  if (c.spine.points.length === 4) {
+    facts[f + SEGMENT_FROM] = at;
+    facts[f + SEGMENT_TO] = at + 3;
+  }
+  put(c.spine.points, 1);
+  put(c.spine.normals, 0);
+  return at;
 }
 
 /** Splits the pieces at the median of the widest spread of centres; returns the node after the subtree. */
 function growTree(body: Body, boxes: Float64Array, order: Int32Array, from: number, to: number, node: number): number {
   if (to - from === 1) {
-    body.leafPiece[node] = order[from]!;
-    body.leafOf[order[from]!] = node;
+    body.tree[2 * node + 1] = order[from]!;
+    body.facts[FACTS * order[from]! + LEAF] = node;
     return node + 1;
   }
   let axis = 0;
@@ -157,16 +171,16 @@ function growTree(body: Body, boxes: Float64Array, order: Int32Array, from: numb
   order.subarray(from, to).sort((i, j) => middle(i) - middle(j) || i - j);
   const half = (from + to) >> 1;
   const second = growTree(body, boxes, order, from, half, node + 1);
-  body.second[node] = second;
+  body.tree[2 * node] = second;
   return growTree(body, boxes, order, half, to, second);
 }
 
 /** Writes the world box of one piece's core grown by its radius: exact, also for discs. */
 function pieceBox(body: Body, piece: number, out: Float64Array, at: number): void {
   const { world } = body;
-  const s = body.start[piece]!;
-  const r = body.radius[piece]!;
-  const core = body.core[piece]!;
+  const s = body.facts[FACTS * piece + START]!;
+  const r = body.sizes[SIZES * piece]!;
+  const core = body.facts[FACTS * piece + CORE]!;
   for (let k = 0; k < 3; k++) {
     let low = Infinity;
     let high = -Infinity;
@@ -183,7 +197,7 @@ function pieceBox(body: Body, piece: number, out: Float64Array, at: number): voi
       low = c - reach;
       high = c + reach;
     } else {
-      const n = body.corners[piece]!;
+      const n = body.facts[FACTS * piece + CORNERS]!;
       for (let i = 0, p = s + k; i < n; i++, p += 3) {
         const c = world[p]!;
         if (c < low) low = c;
@@ -194,7 +208,7 @@ function pieceBox(body: Body, piece: number, out: Float64Array, at: number): voi
         if (offset < 0) low += offset;
         else high += offset;
       } else if (core === CORE_DISCS) {
-        const discs = body.discs[piece]!;
+        const discs = body.facts[FACTS * piece + DISCS]!;
         const vectors = s + 3 * (n + discs);
         for (let d = 0; d < discs; d++) {
           const c = world[s + 3 * (n + d) + k]!;
@@ -217,7 +231,7 @@ function pieceBox(body: Body, piece: number, out: Float64Array, at: number): voi
  */
 export function setPose(body: Body, pose: Pose): void {
   body.pose = pose;
-  const { local, world, placed, boxes, middles, second, leafPiece } = body;
+  const { local, world, placed, boxes, middles, tree } = body;
   const m = pose.rotation;
   const [m0, m1, m2, m3, m4, m5, m6, m7, m8] = [m[0]!, m[1]!, m[2]!, m[3]!, m[4]!, m[5]!, m[6]!, m[7]!, m[8]!];
   const [ax, ay, az] = pose.at;
@@ -230,10 +244,10 @@ export function setPose(body: Body, pose: Pose): void {
     world[i + 1] = m3 * x + m4 * y + m5 * z + p * ay;
     world[i + 2] = m6 * x + m7 * y + m8 * z + p * az;
   }
-  for (let node = second.length - 1; node >= 0; node--) {
-    const right = second[node]!;
+  for (let node = tree.length / 2 - 1; node >= 0; node--) {
+    const right = tree[2 * node]!;
     const o = 6 * node;
-    if (right === 0) pieceBox(body, leafPiece[node]!, boxes, o);
+    if (right === 0) pieceBox(body, tree[2 * node + 1]!, boxes, o);
     else {
       const l = o + 6;
       const r = 6 * right;
@@ -245,8 +259,8 @@ export function setPose(body: Body, pose: Pose): void {
     for (let k = 0; k < 3; k++) {
       const low = boxes[o + k]!;
       const high = boxes[o + 3 + k]!;
-      middles[o + k] = (low + high) / 2;
-      middles[o + 3 + k] = (high - low) / 2;
+      middles[NODE * node + k] = (low + high) / 2;
+      middles[NODE * node + 3 + k] = (high - low) / 2;
     }
   }
 }

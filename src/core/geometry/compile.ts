@@ -148,6 +148,36 @@ export function halfOf(edges: readonly Vec3[]): number[] {
   return square ? sizes : [0, 0, 0];
 }
 
+/**
+ * What the kernel knows of a piece in whole numbers, `FACTS` of them together, so that a piece is one line of memory: its
+ * kind of core, where its numbers begin in `world`, its points (corners, or the ring of a prism) and discs; where its spine
+ * begins (-1 without one) and of how many points; both ends of the segment that its core or spine is (a point has one
+ * end twice, anything else -1); the leaf of the tree it is in; whether it is a rectangular box, and a right circular cylinder.
+ */
+export const FACTS = 16;
+export const CORE = 0;
+export const START = 1;
+export const CORNERS = 2;
+export const DISCS = 3;
+export const SPINE = 4;
+export const SPINE_POINTS = 5;
+export const SEGMENT_FROM = 6;
+export const SEGMENT_TO = 7;
+export const LEAF = 8;
+export const RECTANGULAR = 9;
+export const CIRCULAR = 10;
+
+/** Lengths of a piece, mm: ball radius, spine radius, and from `HALF` the three half edges of a rectangular box. */
+export const SIZES = 8;
+export const HALF = 2;
+
+/** Numbers of a node: middle x, y, z and half extents x, y, z of its world box, and its size where the pieces were made. */
+export const NODE = 8;
+
+/**
+ * Round tubes and bars: points whose hull grown by `radius` holds the piece, and whose surface is that of the piece between
+ * two end planes.
+ */
 export interface Spine {
   /** The spine's points, then a point of either end plane. */
   points: Vec3[];
@@ -212,10 +242,16 @@ export interface Compiled {
   corners: number;
   discs: number;
   spine?: Spine | undefined;
+  /** Of the ball that the core is grown by. */
+  radius: number;
 }
 
 /** @throws RangeError for a piece without points and discs, with a number that is not finite, or with a negative radius. */
 export function compilePiece(piece: Piece): Compiled {
+  return { ...compileCore(piece), radius: piece.radius };
+}
+
+function compileCore(piece: Piece): Omit<Compiled, "radius"> {
   const discs = piece.discs.filter((d) => !point(d));
   const points = [...piece.points, ...piece.discs.filter(point).map((d) => d.centre)];
   if (points.length + discs.length === 0) throw new RangeError("a piece needs at least one point or disc");

@@ -1,4 +1,5 @@
 import type { Body } from "./body.ts";
+import { FACTS, START } from "./compile.ts";
 import { tryDirection } from "./depth-search.ts";
 import { NOTHING } from "./support.ts";
 import { addGenerators, addTravel, CENTRE, GENERATORS } from "./depth-zonotope.ts";
@@ -49,7 +50,7 @@ export function discDepth(
   travel: Float64Array | null,
 ): number {
   const { world } = round;
-  const s = round.start[piece]!;
+  const s = round.facts[FACTS * piece + START]!;
   CENTRE.fill(0);
   for (let k = 0; k < 3; k++) {
     CENTRE[k] = sign * world[s + k]!;

@@ -1,5 +1,5 @@
 import type { Body } from "./body.ts";
-import { CORE_BOX, CORE_POINTS } from "./compile.ts";
+import { CORE, CORE_BOX, CORE_POINTS, CORNERS, FACTS, START } from "./compile.ts";
 import { tryDirection } from "./depth-search.ts";
 
 /**
@@ -12,18 +12,18 @@ export const GENERATORS = new Float64Array(30);
 export const CENTRE = new Float64Array(3);
 
 export const isZonotope = (body: Body, piece: number): boolean =>
-  body.core[piece] === CORE_BOX || (body.core[piece] === CORE_POINTS && body.corners[piece]! <= 2);
+  body.facts[FACTS * piece + CORE] === CORE_BOX || (body.facts[FACTS * piece + CORE] === CORE_POINTS && body.facts[FACTS * piece + CORNERS]! <= 2);
 
 /** Adds a piece's half edges; returns how many there are then. `sign` places its centre. */
 export function addGenerators(body: Body, piece: number, sign: number, count: number): number {
   const { world } = body;
-  const s = body.start[piece]!;
-  if (body.core[piece] === CORE_BOX) {
+  const s = body.facts[FACTS * piece + START]!;
+  if (body.facts[FACTS * piece + CORE] === CORE_BOX) {
     for (let k = 0; k < 3; k++) CENTRE[k] = CENTRE[k]! + sign * world[s + k]!;
     for (let k = 0; k < 9; k++) GENERATORS[3 * count + k] = world[s + 3 + k]!;
     return count + 3;
   }
-  if (body.corners[piece] === 1) {
+  if (body.facts[FACTS * piece + CORNERS] === 1) {
     for (let k = 0; k < 3; k++) CENTRE[k] = CENTRE[k]! + sign * world[s + k]!;
     return count;
   }

@@ -1,5 +1,5 @@
 import type { Body } from "./body.ts";
-import { CORE_BOX, CORE_POINTS, CORE_ROUND } from "./compile.ts";
+import { CIRCULAR, CORE, CORE_BOX, CORE_POINTS, CORE_ROUND, CORNERS, DISCS, FACTS, START } from "./compile.ts";
 import type { Vec3 } from "../frames.ts";
 import { leastWidth, searchDepth, searchWasCertain, startSearch, tryDirection } from "./depth-search.ts";
 import { discDepth } from "./depth-disc.ts";
@@ -35,9 +35,9 @@ export function coreDepth(
   if (travel === null && parallelRounds(a, pieceA, b, pieceB)) return leastWidth();
   tryAxes(a, pieceA, b, pieceB, travel);
   if (leastWidth() <= enough) return leastWidth();
-  if (a.circular[pieceA] === 1 && isZonotope(b, pieceB)) return discDepth(a, pieceA, 1, b, pieceB, a, pieceA, b, pieceB, travel);
-  if (b.circular[pieceB] === 1 && isZonotope(a, pieceA)) return discDepth(b, pieceB, -1, a, pieceA, a, pieceA, b, pieceB, travel);
-  if (a.discs[pieceA] === 0 && b.discs[pieceB] === 0) {
+  if (a.facts[FACTS * pieceA + CIRCULAR] === 1 && isZonotope(b, pieceB)) return discDepth(a, pieceA, 1, b, pieceB, a, pieceA, b, pieceB, travel);
+  if (b.facts[FACTS * pieceB + CIRCULAR] === 1 && isZonotope(a, pieceA)) return discDepth(b, pieceB, -1, a, pieceA, a, pieceA, b, pieceB, travel);
+  if (a.facts[FACTS * pieceA + DISCS] === 0 && b.facts[FACTS * pieceB + DISCS] === 0) {
     const facetsA = facetsOfAny(a, pieceA);
     const facetsB = facetsOfAny(b, pieceB);
     if (facetsA && facetsB) return polytopeDepth(a, pieceA, facetsA, b, pieceB, facetsB, travel, enough);
@@ -51,15 +51,15 @@ export function coreDepth(
 const AXES = new Float64Array(14);
 function readAxis(body: Body, piece: number, at: number): boolean {
   const { world } = body;
-  const s = body.start[piece]!;
-  if (body.core[piece] === CORE_ROUND) {
-    if (body.circular[piece] === 0) return false;
+  const s = body.facts[FACTS * piece + START]!;
+  if (body.facts[FACTS * piece + CORE] === CORE_ROUND) {
+    if (body.facts[FACTS * piece + CIRCULAR] === 0) return false;
     for (let k = 0; k < 6; k++) AXES[at + k] = world[s + k]!;
     AXES[at + 6] = Math.sqrt(world[s + 6]! ** 2 + world[s + 7]! ** 2 + world[s + 8]! ** 2);
     return true;
   }
-  if (body.core[piece] !== CORE_POINTS || body.corners[piece]! > 2) return false;
-  const q = body.corners[piece] === 2 ? s + 3 : s;
+  if (body.facts[FACTS * piece + CORE] !== CORE_POINTS || body.facts[FACTS * piece + CORNERS]! > 2) return false;
+  const q = body.facts[FACTS * piece + CORNERS] === 2 ? s + 3 : s;
   for (let k = 0; k < 3; k++) {
     AXES[at + k] = (world[s + k]! + world[q + k]!) / 2;
     AXES[at + 3 + k] = (world[q + k]! - world[s + k]!) / 2;
@@ -119,8 +119,8 @@ function tryAxes(a: Body, pieceA: number, b: Body, pieceB: number, travel: Float
   for (let side = 0; side < 2; side++) {
     const body = side === 0 ? a : b;
     const piece = side === 0 ? pieceA : pieceB;
-    if (body.core[piece] !== CORE_ROUND) continue;
-    const u = body.start[piece]! + 6;
+    if (body.facts[FACTS * piece + CORE] !== CORE_ROUND) continue;
+    const u = body.facts[FACTS * piece + START]! + 6;
     const { world } = body;
     // Square to the end discs.
     const x = world[u + 1]! * world[u + 5]! - world[u + 2]! * world[u + 4]!;
@@ -134,8 +134,8 @@ function tryAxes(a: Body, pieceA: number, b: Body, pieceB: number, travel: Float
 }
 
 function facetsOfAny(body: Body, piece: number): Facets | null {
-  if (body.core[piece] !== CORE_BOX) return facetsOf(body, piece);
-  return (body.facets[piece] ??= boxFacets(body.local, body.start[piece]! + 3));
+  if (body.facts[FACTS * piece + CORE] !== CORE_BOX) return facetsOf(body, piece);
+  return (body.facets[piece] ??= boxFacets(body.local, body.facts[FACTS * piece + START]! + 3));
 }
 
 function boxFacets(local: Float64Array, at: number): Facets {

@@ -1,5 +1,5 @@
 import type { Body } from "./body.ts";
-import { CORE_PRISM, CORE_RING } from "./compile.ts";
+import { CORE, CORE_PRISM, CORE_RING, CORNERS, FACTS, START } from "./compile.ts";
 
 /** Facet normals and edges of a convex polytope, in the coordinates of its points: what separating axes are made of. */
 export interface Facets {
@@ -33,11 +33,11 @@ export function facetsOf(body: Body, piece: number): Facets | null {
   const known = body.facets[piece];
   if (known !== undefined) return known;
   const points: P[] = [];
-  const s = body.start[piece]!;
-  const n = body.corners[piece]!;
+  const s = body.facts[FACTS * piece + START]!;
+  const n = body.facts[FACTS * piece + CORNERS]!;
   const read = (at: number): P => [body.local[at]!, body.local[at + 1]!, body.local[at + 2]!];
   for (let i = 0; i < n; i++) points.push(read(s + 3 * i));
-  if (body.core[piece] === CORE_PRISM || body.core[piece] === CORE_RING) {
+  if (body.facts[FACTS * piece + CORE] === CORE_PRISM || body.facts[FACTS * piece + CORE] === CORE_RING) {
     const offset = read(s + 3 * n);
     for (let i = 0; i < n; i++) points.push(mix(1, points[i]!, 1, offset));
   }

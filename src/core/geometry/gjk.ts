@@ -1,5 +1,5 @@
 import type { Body } from "./body.ts";
-import { CORE_POINTS } from "./compile.ts";
+import { CORE, CORE_POINTS, CORNERS, DISCS, FACTS, LEAF, NODE, SPINE, SPINE_POINTS, START } from "./compile.ts";
 import { supportAt, supportPoint } from "./support.ts";
 
 /**
@@ -207,13 +207,13 @@ export function coreDistance(
   spineB = false,
 ): number {
   STATS[0]!++;
-  const boxA = 6 * a.leafOf[pieceA]!;
-  const boxB = 6 * b.leafOf[pieceB]!;
-  const p = a.boxes;
-  const q = b.boxes;
-  let vx = (p[boxA]! + p[boxA + 3]! - q[boxB]! - q[boxB + 3]!) / 2;
-  let vy = (p[boxA + 1]! + p[boxA + 4]! - q[boxB + 1]! - q[boxB + 4]!) / 2;
-  let vz = (p[boxA + 2]! + p[boxA + 5]! - q[boxB + 2]! - q[boxB + 5]!) / 2;
+  const p = a.middles;
+  const q = b.middles;
+  const leafA = NODE * a.facts[FACTS * pieceA + LEAF]!;
+  const leafB = NODE * b.facts[FACTS * pieceB + LEAF]!;
+  let vx = p[leafA]! - q[leafB]!;
+  let vy = p[leafA + 1]! - q[leafB + 1]!;
+  let vz = p[leafA + 2]! - q[leafB + 2]!;
   if (travel !== null) {
     vx -= (travel[0]! + travel[3]!) / 2;
     vy -= (travel[1]! + travel[4]!) / 2;
@@ -225,15 +225,15 @@ export function coreDistance(
     square = 1;
   }
   const worldA = a.world;
-  const startA = spineA ? a.spine[pieceA]! : a.start[pieceA]!;
-  const coreA = spineA ? CORE_POINTS : a.core[pieceA]!;
-  const cornersA = spineA ? a.spinePoints[pieceA]! : a.corners[pieceA]!;
-  const discsA = a.discs[pieceA]!;
+  const startA = spineA ? a.facts[FACTS * pieceA + SPINE]! : a.facts[FACTS * pieceA + START]!;
+  const coreA = spineA ? CORE_POINTS : a.facts[FACTS * pieceA + CORE]!;
+  const cornersA = spineA ? a.facts[FACTS * pieceA + SPINE_POINTS]! : a.facts[FACTS * pieceA + CORNERS]!;
+  const discsA = a.facts[FACTS * pieceA + DISCS]!;
   const worldB = b.world;
-  const startB = spineB ? b.spine[pieceB]! : b.start[pieceB]!;
-  const coreB = spineB ? CORE_POINTS : b.core[pieceB]!;
-  const cornersB = spineB ? b.spinePoints[pieceB]! : b.corners[pieceB]!;
-  const discsB = b.discs[pieceB]!;
+  const startB = spineB ? b.facts[FACTS * pieceB + SPINE]! : b.facts[FACTS * pieceB + START]!;
+  const coreB = spineB ? CORE_POINTS : b.facts[FACTS * pieceB + CORE]!;
+  const cornersB = spineB ? b.facts[FACTS * pieceB + SPINE_POINTS]! : b.facts[FACTS * pieceB + CORNERS]!;
+  const discsB = b.facts[FACTS * pieceB + DISCS]!;
   // Corners of the simplex kept so far; the new one is put after them.
   let size = 0;
   let best = Math.sqrt(square);

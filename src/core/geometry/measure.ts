@@ -1,4 +1,5 @@
 import type { Body } from "./body.ts";
+import { FACTS, HALF, NODE, RECTANGULAR, SEGMENT_FROM, SEGMENT_TO, SIZES, SPINE, SPINE_POINTS, START } from "./compile.ts";
 import { buildBody, setPose } from "./body.ts";
 import { capDistance, edgeDistance, lineBetween, roundBoxDistance } from "./rims.ts";
 import { BEYOND, CLOSEST_AT, segmentBoxSquare, segmentSquare } from "./segments.ts";
@@ -109,7 +110,7 @@ const ON_SIDE = 1e-9;
 /** Whether the point of a spine grown by its radius along n, starting from x, y, z, is between the piece's end planes. */
 function onRoundSide(body: Body, piece: number, x: number, y: number, z: number): boolean {
   const { world } = body;
-  const e = body.spine[piece]! + 3 * body.spinePoints[piece]!;
+  const e = body.facts[FACTS * piece + SPINE]! + 3 * body.facts[FACTS * piece + SPINE_POINTS]!;
   const low = (x - world[e]!) * world[e + 6]! + (y - world[e + 1]!) * world[e + 7]! + (z - world[e + 2]!) * world[e + 8]!;
   if (low > ON_SIDE) return false;
   const high =
@@ -147,14 +148,14 @@ function rimDistance(
   const vz = closestA[2]! - closestB[2]!;
   const insideA = CLOSEST_AT[0]! > 0 && CLOSEST_AT[0]! < 1;
   const insideB = CLOSEST_AT[1]! > 0 && CLOSEST_AT[1]! < 1;
-  if (insideA && !insideB && lineBetween(a.world, s, sEnd, a.spineRadius[i]!)) {
+  if (insideA && !insideB && lineBetween(a.world, s, sEnd, a.sizes[SIZES * i + 1]!)) {
     const found = edgeDistance(a, i, b, j, vx, vy, vz, 1, enough);
     if (found === Infinity) return found;
-    if (found > 0 && (a.spine[i]! >= 0 ? onRoundSide(a, i, closestA[0]!, closestA[1]!, closestA[2]!) : onSegment(a.world, s, sEnd, closestA))) return found;
-  } else if (insideB && !insideA && lineBetween(b.world, t, tEnd, b.spineRadius[j]!)) {
+    if (found > 0 && (a.facts[FACTS * i + SPINE]! >= 0 ? onRoundSide(a, i, closestA[0]!, closestA[1]!, closestA[2]!) : onSegment(a.world, s, sEnd, closestA))) return found;
+  } else if (insideB && !insideA && lineBetween(b.world, t, tEnd, b.sizes[SIZES * j + 1]!)) {
     const found = edgeDistance(a, i, b, j, vx, vy, vz, 2, enough);
     if (found === Infinity) return found;
-    if (found > 0 && (b.spine[j]! >= 0 ? onRoundSide(b, j, closestB[0]!, closestB[1]!, closestB[2]!) : onSegment(b.world, t, tEnd, closestB))) return found;
+    if (found > 0 && (b.facts[FACTS * j + SPINE]! >= 0 ? onRoundSide(b, j, closestB[0]!, closestB[1]!, closestB[2]!) : onSegment(b.world, t, tEnd, closestB))) return found;
   }
   return edgeDistance(a, i, b, j, vx, vy, vz, 0, enough);
 }
@@ -165,15 +166,15 @@ function rimDistance(
  * point it gives is on the piece's round side, and bounds the distance from below everywhere.
  */
 function pairDistance(a: Body, i: number, b: Body, j: number, travel: Float64Array | null, enough: number): number {
-  const spineA = a.spine[i]! >= 0;
-  const spineB = b.spine[j]! >= 0;
-  const ra = spineA ? a.spineRadius[i]! : 0;
-  const rb = spineB ? b.spineRadius[j]! : 0;
+  const spineA = a.facts[FACTS * i + SPINE]! >= 0;
+  const spineB = b.facts[FACTS * j + SPINE]! >= 0;
+  const ra = spineA ? a.sizes[SIZES * i + 1]! : 0;
+  const rb = spineB ? b.sizes[SIZES * j + 1]! : 0;
   const within = enough + ra + rb;
-  const s = travel === null ? a.segmentFrom[i]! : -1;
-  const t = travel === null ? b.segmentFrom[j]! : -1;
-  const sEnd = a.segmentTo[i]!;
-  const tEnd = b.segmentTo[j]!;
+  const s = travel === null ? a.facts[FACTS * i + SEGMENT_FROM]! : -1;
+  const t = travel === null ? b.facts[FACTS * j + SEGMENT_FROM]! : -1;
+  const sEnd = a.facts[FACTS * i + SEGMENT_TO]!;
+  const tEnd = b.facts[FACTS * j + SEGMENT_TO]!;
   let core: number;
   if (s >= 0 && t >= 0) {
     // Measured just before (see measurePair): the points are there, the distance is between them.
@@ -181,10 +182,10 @@ function pairDistance(a: Body, i: number, b: Body, j: number, travel: Float64Arr
     const y = closestA[1]! - closestB[1]!;
     const z = closestA[2]! - closestB[2]!;
     core = x * x + y * y + z * z;
-  } else if (s >= 0 && b.boxHalf[3 * j]! > 0) {
-    core = segmentBoxSquare(a.world, s, sEnd, b.world, b.start[j]!, b.boxHalf, 3 * j, closestA, closestB);
-  } else if (t >= 0 && a.boxHalf[3 * i]! > 0) {
-    core = segmentBoxSquare(b.world, t, tEnd, a.world, a.start[i]!, a.boxHalf, 3 * i, closestB, closestA);
+  } else if (s >= 0 && b.facts[FACTS * j + RECTANGULAR] === 1) {
+    core = segmentBoxSquare(a.world, s, sEnd, b.world, b.facts[FACTS * j + START]!, b.sizes, SIZES * j + HALF, closestA, closestB);
+  } else if (t >= 0 && a.facts[FACTS * i + RECTANGULAR] === 1) {
+    core = segmentBoxSquare(b.world, t, tEnd, a.world, a.facts[FACTS * i + START]!, a.sizes, SIZES * i + HALF, closestB, closestA);
   } else {
     if (!spineA && !spineB) return coreDistance(a, i, b, j, travel, enough);
     core = coreDistance(a, i, b, j, travel, within, spineA, spineB);
@@ -223,8 +224,8 @@ function pairDistance(a: Body, i: number, b: Body, j: number, travel: Float64Arr
     const vz = closestA[2]! - closestB[2]!;
     let found: number;
     if (s >= 0 && t >= 0) found = rimDistance(a, i, b, j, s, sEnd, t, tEnd, enough);
-    else if (s >= 0 && b.boxHalf[3 * j]! > 0) found = roundBoxDistance(a, i, b, j, true, BEYOND, enough);
-    else if (t >= 0 && a.boxHalf[3 * i]! > 0) found = roundBoxDistance(b, j, a, i, false, BEYOND, enough);
+    else if (s >= 0 && b.facts[FACTS * j + RECTANGULAR] === 1) found = roundBoxDistance(a, i, b, j, true, BEYOND, enough);
+    else if (t >= 0 && a.facts[FACTS * i + RECTANGULAR] === 1) found = roundBoxDistance(b, j, a, i, false, BEYOND, enough);
     else found = edgeDistance(a, i, b, j, vx, vy, vz, 0, enough);
     if (found > 0) return found;
     found = capDistance(a, i, b, j, true, vx, vy, vz, enough);
@@ -245,17 +246,17 @@ function measurePair(
   best: number,
   out: Measure,
 ): number {
-  const ra = a.radius[i]!;
-  const rb = b.radius[j]!;
+  const ra = a.sizes[SIZES * i]!;
+  const rb = b.sizes[SIZES * j]!;
   const enough = best + ra + rb + SLACK;
-  const s = a.segmentFrom[i]!;
-  const t = b.segmentFrom[j]!;
+  const s = a.facts[FACTS * i + SEGMENT_FROM]!;
+  const t = b.facts[FACTS * j + SEGMENT_FROM]!;
   if (travel === null && s >= 0 && t >= 0) {
     // Two segments, or the spines that hold round pieces: most end here.
-    const within = enough + a.spineRadius[i]! + b.spineRadius[j]!;
-    const square = segmentSquare(a.world, s, a.segmentTo[i]!, b.world, t, b.segmentTo[j]!);
+    const within = enough + a.sizes[SIZES * i + 1]! + b.sizes[SIZES * j + 1]!;
+    const square = segmentSquare(a.world, s, a.facts[FACTS * i + SEGMENT_TO]!, b.world, t, b.facts[FACTS * j + SEGMENT_TO]!);
     if (square > within * within && within > 0) return best;
-  } else if (out.pieceA >= 0 && (travel !== null || best < 0 || !((s >= 0 && b.boxHalf[3 * j]! > 0) || (t >= 0 && a.boxHalf[3 * i]! > 0)))) {
+  } else if (out.pieceA >= 0 && (travel !== null || best < 0 || !((s >= 0 && b.facts[FACTS * j + RECTANGULAR] === 1) || (t >= 0 && a.facts[FACTS * i + RECTANGULAR] === 1)))) {
     // The direction of the best pair so far, as a guess of what parts this one too (or leaves it less deep): any slab
     // bounds the signed distance from below. It prunes, it never decides.
     const gap = slabAlong(a, i, b, j, travel, DIRECTION[0]!, DIRECTION[1]!, DIRECTION[2]!);
@@ -294,8 +295,8 @@ function measurePair(
 
 /** Where the overlap of the governing pieces is met: b parted along the least way out by one millimetre more, then put back. */
 function writeOverlapPoints(a: Body, b: Body, travel: Float64Array | null, out: Measure): void {
-  const ra = a.radius[out.pieceA]!;
-  const rb = b.radius[out.pieceB]!;
+  const ra = a.sizes[SIZES * out.pieceA]!;
+  const rb = b.sizes[SIZES * out.pieceB]!;
   const way = -out.distance - ra - rb + 1;
   for (let k = 0; k < 3; k++) {
     const step = -way * DIRECTION[k]!;
@@ -372,8 +373,8 @@ function searchTrees(
 ): number {
   const p = a.middles;
   const q = b.middles;
-  const secondA = a.second;
-  const secondB = b.second;
+  const treeA = a.tree;
+  const treeB = b.tree;
   let best = bound;
   let limit = limitOf(best);
   let m = 0;
@@ -383,11 +384,11 @@ function searchTrees(
   if (whole > limit) return best;
   for (;;) {
     STATS[2]!++;
-    const mRight = secondA[m]!;
-    const nRight = secondB[n]!;
+    const mRight = treeA[2 * m]!;
+    const nRight = treeB[2 * n]!;
     if (mRight === 0 && nRight === 0) {
-      const i = a.leafPiece[m]!;
-      const j = b.leafPiece[n]!;
+      const i = treeA[2 * m + 1]!;
+      const j = treeB[2 * n + 1]!;
       if (i !== doneA || j !== doneB) {
         best = measurePair(a, i, b, j, travel, best, out);
         limit = limitOf(best);
@@ -397,7 +398,7 @@ function searchTrees(
       let m2 = m;
       let n1 = n;
       let n2 = n;
-      if (nRight === 0 || (mRight !== 0 && a.spread[m]! >= b.spread[n]!)) {
+      if (nRight === 0 || (mRight !== 0 && p[NODE * m + 6]! >= q[NODE * n + 6]!)) {
         m1 = m + 1;
         m2 = mRight;
       } else {
@@ -407,11 +408,11 @@ function searchTrees(
       let first: number;
       let second: number;
       if (travel === null) {
-        first = boxKey(p, 6 * m1, q, 6 * n1);
-        second = boxKey(p, 6 * m2, q, 6 * n2);
+        first = boxKey(p, NODE * m1, q, NODE * n1);
+        second = boxKey(p, NODE * m2, q, NODE * n2);
       } else {
-        first = movingBoxKey(p, 6 * m1, q, 6 * n1, travel);
-        second = movingBoxKey(p, 6 * m2, q, 6 * n2, travel);
+        first = movingBoxKey(p, NODE * m1, q, NODE * n1, travel);
+        second = movingBoxKey(p, NODE * m2, q, NODE * n2, travel);
       }
       if (first <= limit) {
         if (second <= limit) {

@@ -1,5 +1,5 @@
 import type { Body } from "./body.ts";
-import { CORE_DISCS, CORE_ROUND } from "./compile.ts";
+import { CIRCULAR, CORE, CORE_DISCS, CORE_ROUND, CORNERS, DISCS, FACTS, HALF, SIZES, START } from "./compile.ts";
 import { closestA, closestB, slabAlong } from "./gjk.ts";
 import { NOTHING, supportAt } from "./support.ts";
 
@@ -36,15 +36,15 @@ function edgePoint(
   tangent: Float64Array,
 ): number {
   const { world } = body;
-  const s = body.start[piece]!;
-  const core = body.core[piece]!;
-  const discs = body.discs[piece]!;
-  const name = supportAt(world, s, core, body.corners[piece]!, discs, dx, dy, dz, out, 0);
+  const s = body.facts[FACTS * piece + START]!;
+  const core = body.facts[FACTS * piece + CORE]!;
+  const discs = body.facts[FACTS * piece + DISCS]!;
+  const name = supportAt(world, s, core, body.facts[FACTS * piece + CORNERS]!, discs, dx, dy, dz, out, 0);
   if (name >= 0) return 0;
   let w = s + 6;
   if (core === CORE_DISCS) {
     // The disc that the support point is on: the one that reaches farthest.
-    const n = body.corners[piece]!;
+    const n = body.facts[FACTS * piece + CORNERS]!;
     let most = -Infinity;
     const vectors = s + 3 * (n + discs);
     for (let d = 0; d < discs; d++) {
@@ -223,8 +223,8 @@ export function roundBoxDistance(
   beyond: Float64Array,
   enough: number,
 ): number {
-  const { world, boxHalf } = box;
-  const s = box.start[boxPiece]!;
+  const { world, sizes } = box;
+  const s = box.facts[FACTS * boxPiece + START]!;
   const u = beyond[0]!;
   const v = beyond[1]!;
   const w = beyond[2]!;
@@ -232,13 +232,13 @@ export function roundBoxDistance(
   const sign = roundFirst ? 1 : -1;
   if (sides === 1) {
     const k = u !== 0 ? 0 : v !== 0 ? 1 : 2;
-    const half = boxHalf[3 * boxPiece + k]!;
+    const half = sizes[SIZES * boxPiece + HALF + k]!;
     const side = (u + v + w < 0 ? -1 : 1) / half;
     const e = s + 3 + 3 * k;
     const nx = side * world[e]!;
     const ny = side * world[e + 1]!;
     const nz = side * world[e + 2]!;
-    supportAt(round.world, round.start[piece]!, round.core[piece]!, round.corners[piece]!, round.discs[piece]!, -nx, -ny, -nz, FACE, 0);
+    supportAt(round.world, round.facts[FACTS * piece + START]!, round.facts[FACTS * piece + CORE]!, round.facts[FACTS * piece + CORNERS]!, round.facts[FACTS * piece + DISCS]!, -nx, -ny, -nz, FACE, 0);
     const x = FACE[0]! - world[s]!;
     const y = FACE[1]! - world[s + 1]!;
     const z = FACE[2]! - world[s + 2]!;
@@ -248,7 +248,7 @@ export function roundBoxDistance(
     for (let other = 0; other < 3; other++) {
       if (other === k) continue;
       const f = s + 3 + 3 * other;
-      const h = boxHalf[3 * boxPiece + other]!;
+      const h = sizes[SIZES * boxPiece + HALF + other]!;
       if (Math.abs(x * world[f]! + y * world[f + 1]! + z * world[f + 2]!) > h * h) return edgeDistanceOf(round, piece, box, boxPiece, roundFirst, nx, ny, nz, 0, enough);
     }
     const mine = roundFirst ? closestA : closestB;
@@ -266,7 +266,7 @@ export function roundBoxDistance(
   const vz = sign * (closestA[2]! - closestB[2]!);
   if (sides === 2) {
     const k = u === 0 ? 0 : v === 0 ? 1 : 2;
-    const half = boxHalf[3 * boxPiece + k]!;
+    const half = sizes[SIZES * boxPiece + HALF + k]!;
     for (let axis = 0; axis < 3; axis++) {
       let c = world[s + axis]!;
       for (let m = 0; m < 3; m++) if (m !== k) c += (beyond[m]! < 0 ? -1 : 1) * world[s + 3 + 3 * m + axis]!;
@@ -318,9 +318,9 @@ export function capDistance(
   vz: number,
   enough: number,
 ): number {
-  if (round.circular[piece] === 0) return -1;
+  if (round.facts[FACTS * piece + CIRCULAR] === 0) return -1;
   const { world } = round;
-  const s = round.start[piece]!;
+  const s = round.facts[FACTS * piece + START]!;
   let nx = world[s + 3]!;
   let ny = world[s + 4]!;
   let nz = world[s + 5]!;
@@ -329,7 +329,7 @@ export function capDistance(
   nx *= scale;
   ny *= scale;
   nz *= scale;
-  supportAt(other.world, other.start[otherPiece]!, other.core[otherPiece]!, other.corners[otherPiece]!, other.discs[otherPiece]!, -nx, -ny, -nz, FACE, 0);
+  supportAt(other.world, other.facts[FACTS * otherPiece + START]!, other.facts[FACTS * otherPiece + CORE]!, other.facts[FACTS * otherPiece + CORNERS]!, other.facts[FACTS * otherPiece + DISCS]!, -nx, -ny, -nz, FACE, 0);
   const x = FACE[0]! - world[s]!;
   const y = FACE[1]! - world[s + 1]!;
   const z = FACE[2]! - world[s + 2]!;
@@ -340,7 +340,7 @@ export function capDistance(
   const px = x - along * nx;
   const py = y - along * ny;
   const pz = z - along * nz;
-  const r = round.spineRadius[piece]!;
+  const r = round.sizes[SIZES * piece + 1]!;
   if (px * px + py * py + pz * pz > r * r) return -1;
   const mine = roundFirst ? closestA : closestB;
   const its = roundFirst ? closestB : closestA;

@@ -1,5 +1,5 @@
 import type { Body } from "./body.ts";
-import { CORE_BOX, CORE_DISCS, CORE_POINTS, CORE_PRISM, CORE_RING } from "./compile.ts";
+import { CORE, CORE_BOX, CORE_DISCS, CORE_POINTS, CORE_PRISM, CORE_RING, CORNERS, DISCS, FACTS, START } from "./compile.ts";
 
 /** Below this a length squared has lost its digits: a disc seen so nearly square on is met at its centre. */
 export const NOTHING = 1e-140;
@@ -20,10 +20,10 @@ export function supportPoint(
 ): number {
   return supportAt(
     body.world,
-    body.start[piece]!,
-    body.core[piece]!,
-    body.corners[piece]!,
-    body.discs[piece]!,
+    body.facts[FACTS * piece + START]!,
+    body.facts[FACTS * piece + CORE]!,
+    body.facts[FACTS * piece + CORNERS]!,
+    body.facts[FACTS * piece + DISCS]!,
     dx,
     dy,
     dz,
