@@ -2,8 +2,8 @@ import type { TravelBox } from "../geometry/piece.ts";
 import type { Layout, Movement, Part } from "../layout/schema.ts";
 
 /**
- * What a thing is carried by, itself first, the chassis left out. Two things move against each other only by the links below the first one
- * that they share.
+ * Who carries whom, and how far two things may move against each other. Carriers form a tree whose root is the chassis; a thing's
+ * chain leads from itself to the last carrier, the chassis left out.
  */
 export interface Link {
   readonly key: string;
@@ -12,8 +12,6 @@ export interface Link {
   readonly notCovered: readonly string[];
 }
 export type Chain = readonly Link[];
-
-export const STILL: Movement = { x: [0, 0], y: [0, 0], z: [0, 0] };
 
 /** A part's chain: the part, its carrier, the carrier's carrier. Circles are refused by the document's invariants. */
 export function chainOf(part: Part, parts: ReadonlyMap<string, Part>, chassis: Layout["chassis"]): Chain {
@@ -37,40 +35,66 @@ function uncovered(part: Part, chassis: Layout["chassis"]): readonly string[] {
   return out;
 }
 
-/** The links of `chain` below the first one that `other` shares. */
-function ownLinks(chain: Chain, other: Chain): readonly Link[] {
-  const shared = new Set(other.map((link) => link.key));
-  const at = chain.findIndex((link) => shared.has(link.key));
-  return at < 0 ? chain : chain.slice(0, at);
+/**
+ * The chain of a shaft's outboard joint: its wheel's, without steering (the joint sits on the steering axis), and with an arm of radius R
+ * the way inward that the swing brings, R - sqrt(R^2 - t^2) at the greater travel t: all of the arc lies in that box.
+ */
+export function outboardChain(shaft: { readonly key: string; readonly inboard: readonly number[]; readonly outboard: readonly number[]; readonly arm?: number | undefined }, wheel: Chain): Chain {
+  const chain = wheel.map((link) => ({ ...link, notCovered: link.notCovered.filter((word) => word !== "steer") }));
+  const z = wheel[0]?.movement.z;
+  if (shaft.arm === undefined || z === undefined) return chain;
+  const travel = Math.min(shaft.arm, Math.max(-z[0], z[1]));
+  const inward = shaft.arm - Math.sqrt(shaft.arm * shaft.arm - travel * travel);
+  const y: [number, number] = shaft.inboard[1]! >= shaft.outboard[1]! ? [0, inward] : [-inward + 0, 0];
+  return [{ key: `${shaft.key}/arm`, movement: { x: [0, 0], y, z: [0, 0] }, notCovered: [] }, ...chain];
+}
+
+/** How many links of `chain` come before the first one that `other` shares. */
+function ownLinks(chain: Chain, other: Chain): number {
+  for (let i = 0; i < chain.length; i++) {
+    for (let j = 0; j < other.length; j++) if (chain[i]!.key === other[j]!.key) return i;
+  }
+  return chain.length;
 }
 
 export interface RelativeMovement {
   readonly travel: TravelBox;
+  /** True where the box is a point. */
   readonly still: boolean;
   readonly notCovered: readonly string[];
 }
 
+const NOTHING: readonly string[] = [];
+const SAME: RelativeMovement = { travel: { low: [0, 0, 0], high: [0, 0, 0] }, still: true, notCovered: NOTHING };
+
 /**
- * How b may move relative to a: links add up along each chain and between the two by Minkowski sum (boxes add). Car axes, mm.
- * @example an engine that rocks +-8 across carries a pump: pump and engine move against each other only by the pump's own movement
+ * How b may move relative to a, car axes, mm. Only links below the first one that both share count; they add up along each chain and
+ * between the two by Minkowski sum (boxes add).
+ * @example an engine that moves +-8 across carries a pump: pump and engine move against each other only by the pump's own movement
  */
 export function relativeMovement(a: Chain, b: Chain): RelativeMovement {
-  const low: [number, number, number] = [0, 0, 0];
-  const high: [number, number, number] = [0, 0, 0];
-  const notCovered = new Set<string>();
-  const add = (links: readonly Link[], sign: 1 | -1) => {
-    for (const link of links) {
-      for (const word of link.notCovered) notCovered.add(word);
-      const axes = [link.movement.x, link.movement.y, link.movement.z] as const;
-      axes.forEach(([from, to], k) => {
-        low[k as 0 | 1 | 2] += sign === 1 ? from : -to;
-        high[k as 0 | 1 | 2] += sign === 1 ? to : -from;
-      });
-    }
-  };
-  add(ownLinks(b, a), 1);
-  add(ownLinks(a, b), -1);
-  return { travel: { low: [low[0] + 0, low[1] + 0, low[2] + 0], high: [high[0] + 0, high[1] + 0, high[2] + 0] }, still: [...low, ...high].every((v) => v === 0), notCovered: [...notCovered].sort() };
+  const fromA = ownLinks(a, b);
+  const fromB = ownLinks(b, a);
+  if (fromA === 0 && fromB === 0) return SAME;
+  let [lx, ly, lz, hx, hy, hz] = [0, 0, 0, 0, 0, 0];
+  let words: Set<string> | null = null;
+  for (let i = 0; i < fromB; i++) {
+    const { movement, notCovered } = b[i]!;
+    lx += movement.x[0]; hx += movement.x[1];
+    ly += movement.y[0]; hy += movement.y[1];
+    lz += movement.z[0]; hz += movement.z[1];
+    for (const word of notCovered) (words ??= new Set()).add(word);
+  }
+  for (let i = 0; i < fromA; i++) {
+    const { movement, notCovered } = a[i]!;
+    lx -= movement.x[1]; hx -= movement.x[0];
+    ly -= movement.y[1]; hy -= movement.y[0];
+    lz -= movement.z[1]; hz -= movement.z[0];
+    for (const word of notCovered) (words ??= new Set()).add(word);
+  }
+  const still = lx === 0 && ly === 0 && lz === 0 && hx === 0 && hy === 0 && hz === 0;
+  if (still && words === null) return SAME;
+  return { travel: { low: [lx + 0, ly + 0, lz + 0], high: [hx + 0, hy + 0, hz + 0] }, still, notCovered: words === null ? NOTHING : [...words].sort() };
 }
 
 /** The box hull of several ways to move: what a piece of a run between two nodes may do. */
@@ -85,16 +109,21 @@ export function hullOfMovements(all: readonly RelativeMovement[]): RelativeMovem
   };
 }
 
-/** Farthest any point of a chain's thing may go, mm: for the broad phase only. */
-export function greatestTravel(chain: Chain): number {
-  let x = 0;
-  let y = 0;
-  let z = 0;
-  for (const { movement } of chain) {
-    x += Math.max(-movement.x[0], movement.x[1]);
-    y += Math.max(-movement.y[0], movement.y[1]);
-    z += Math.max(-movement.z[0], movement.z[1]);
+/** How far things with these chains may go in all, each way: low x, y, z, high x, y, z, mm. For the broad phase only. */
+export function wholeTravel(chains: readonly Chain[]): number[] {
+  const out = [0, 0, 0, 0, 0, 0];
+  for (const chain of chains) {
+    const one = [0, 0, 0, 0, 0, 0];
+    for (const { movement } of chain) {
+      [movement.x, movement.y, movement.z].forEach(([low, high], k) => {
+        one[k]! += low;
+        one[k + 3]! += high;
+      });
+    }
+    for (let k = 0; k < 3; k++) {
+      out[k] = Math.min(out[k]!, one[k]!);
+      out[k + 3] = Math.max(out[k + 3]!, one[k + 3]!);
+    }
   }
-  return Math.hypot(x, y, z);
+  return out;
 }
-

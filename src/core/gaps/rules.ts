@@ -12,6 +12,7 @@ export interface RuleSide {
 }
 
 export interface Requirement {
+  /** mm */
   readonly gap: number;
   readonly why: string;
   /** Matching rules that were weaker and asked for more. */
@@ -31,38 +32,75 @@ export function selectorRank(selector: string, side: RuleSide, moving: boolean):
   return side.group !== "" && side.group === name ? 2 : -1;
 }
 
-/** The two ranks of a rule for a pair, larger first, the stronger way round; null where it matches neither way. */
-function ranksOf(rule: PairRule, a: RuleSide, b: RuleSide, moving: boolean): readonly [number, number] | null {
-  let best: readonly [number, number] | null = null;
-  for (const [first, second] of [[a, b], [b, a]] as const) {
-    const one = selectorRank(rule.between[0], first, moving);
-    const other = selectorRank(rule.between[1], second, moving);
-    if (one < 0 || other < 0) continue;
-    const ranks: readonly [number, number] = one >= other ? [one, other] : [other, one];
-    if (!best || ranks[0] > best[0] || (ranks[0] === best[0] && ranks[1] > best[1])) best = ranks;
-  }
-  return best;
+/** Rules with their selectors numbered, so that a side is looked at once and not once a pair. */
+export interface CompiledRules {
+  readonly rules: Rules;
+  readonly selectors: readonly string[];
+  readonly pairs: readonly { readonly rule: PairRule; readonly first: number; readonly second: number }[];
+  /** Where "moving" stands among the selectors, or -1: the only one that depends on the pair. */
+  readonly moving: number;
+  readonly plain: Requirement;
+  /** The largest gap that any rule asks for, mm. */
+  readonly largest: number;
+}
+
+export function compileRules(rules: Rules): CompiledRules {
+  const selectors: string[] = [];
+  const number = (selector: string): number => {
+    const known = selectors.indexOf(selector);
+    return known >= 0 ? known : selectors.push(selector) - 1;
+  };
+  const pairs = rules.pairs.map((rule) => ({ rule, first: number(rule.between[0]), second: number(rule.between[1]) }));
+  return {
+    rules, selectors, pairs, moving: selectors.indexOf("moving"), plain: { gap: rules.gap, why: "default gap", overruled: [] },
+    largest: rules.pairs.reduce((most, rule) => Math.max(most, rule.gap), rules.gap),
+  };
+}
+
+/** Rank of every selector for one side; "moving" as if nothing moved. */
+export function ranksOf(compiled: CompiledRules, side: RuleSide): Int8Array {
+  return Int8Array.from(compiled.selectors, (selector) => selectorRank(selector, side, false));
 }
 
 /**
- * The required gap of a pair, mm: of the rules that match, the strongest (its two ranks, larger first, compared in order; then the larger gap; then
- * the first listed), else the default. Weaker ones that ask for more are named. Symmetric in a and b.
+ * The required gap of a pair, mm: of the rules that match either way round, the strongest (its two ranks, larger first, compared in order; then the
+ * larger gap; then the first listed), else the default. Weaker ones that ask for more are named. Symmetric in a and b.
+ * @param moving whether the two move against each other at all
  */
-export function requiredGap(rules: Rules, a: RuleSide, b: RuleSide, moving: boolean): Requirement {
-  let winner: { rule: PairRule; ranks: readonly [number, number] } | null = null;
-  const matching: PairRule[] = [];
-  for (const rule of rules.pairs) {
-    const ranks = ranksOf(rule, a, b, moving);
-    if (!ranks) continue;
-    matching.push(rule);
-    const stronger = !winner || ranks[0] > winner.ranks[0] || (ranks[0] === winner.ranks[0] && (ranks[1] > winner.ranks[1] || (ranks[1] === winner.ranks[1] && rule.gap > winner.rule.gap)));
-    if (stronger) winner = { rule, ranks };
+export function strongestRule(compiled: CompiledRules, a: Int8Array, b: Int8Array, moving: boolean): Requirement {
+  let winner: PairRule | null = null;
+  let strength = -1;
+  let matching: PairRule[] | null = null;
+  const rank = (side: Int8Array, selector: number): number => (selector === compiled.moving ? (moving ? 1 : -1) : side[selector]!);
+  for (const { rule, first, second } of compiled.pairs) {
+    const one = strengthOf(rank(a, first), rank(b, second));
+    const other = strengthOf(rank(b, first), rank(a, second));
+    const here = Math.max(one, other);
+    if (here < 0) continue;
+    (matching ??= []).push(rule);
+    if (winner === null || here > strength || (here === strength && rule.gap > winner.gap)) {
+      winner = rule;
+      strength = here;
+    }
   }
-  if (!winner) return { gap: rules.gap, why: "default gap", overruled: [] };
-  const { rule } = winner;
-  return {
-    gap: rule.gap,
-    why: rule.why || rule.between.join(" to "),
-    overruled: matching.filter((other) => other !== rule && other.gap > rule.gap).map((other) => ({ gap: other.gap, why: other.why || other.between.join(" to ") })),
-  };
+  if (winner === null) return compiled.plain;
+  const { gap } = winner;
+  const overruled = matching!.filter((rule) => rule.gap > gap).map((rule) => ({ gap: rule.gap, why: reasonOf(rule) }));
+  return { gap, why: reasonOf(winner), overruled };
+}
+
+/** Two ranks as one number, larger first; -1 where either does not match. */
+function strengthOf(one: number, other: number): number {
+  if (one < 0 || other < 0) return -1;
+  return one >= other ? 4 * one + other : 4 * other + one;
+}
+
+function reasonOf(rule: PairRule): string {
+  return rule.why || rule.between.join(" to ");
+}
+
+/** The same for a single question. @example a rule of kind against kind beats one of hot against limited, whatever it asks for */
+export function requiredGap(rules: Rules, a: RuleSide, b: RuleSide, moving: boolean): Requirement {
+  const compiled = compileRules(rules);
+  return strongestRule(compiled, ranksOf(compiled, a), ranksOf(compiled, b), moving);
 }

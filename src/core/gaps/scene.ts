@@ -1,59 +1,65 @@
-import { measureBodies, createMeasure, type Measure } from "../geometry/measure.ts";
-import { candidatePairs, createSweep } from "../geometry/sweep.ts";
-import { applyDiff } from "../layout/diff.ts";
-import type { Diff } from "../layout/commands.ts";
-import { generatedTyres } from "../layout/generated.ts";
-import type { Layout, Part } from "../layout/schema.ts";
+import { applyCommand } from "../layout/apply-command.ts";
+import type { Diff, ListName } from "../layout/commands.ts";
+import type { Layout } from "../layout/schema.ts";
+import { castOf, type Cast } from "./cast.ts";
 import type { Gap, GapReport, TrustedGap, Verdict } from "./gap.ts";
-import { chainOf, hullOfMovements, relativeMovement, type RelativeMovement } from "./movement.ts";
-import { requiredGap } from "./rules.ts";
-import { partThing, roomThing, runThing, shaftThing, type Block, type Thing } from "./things.ts";
-import { contactsOf, neverChecked, trustOf, type Contacts } from "./trust.ts";
+import { measurePair, measureTrusted, pairMovement } from "./measure-pair.ts";
+import { compileRules, ranksOf, strongestRule, type CompiledRules } from "./rules.ts";
+import type { Thing } from "./things.ts";
+import { neverChecked, reasonOf, trustOf } from "./trust.ts";
 import { verdictOf } from "./verdict.ts";
 
-/** A layout ready to be measured: opaque to callers. Things and pairs that a change leaves alone are kept by identity. */
+/**
+ * A layout ready to be measured: an opaque handle. Things and pairs that a change leaves alone are kept as they are; what is kept never changes,
+ * so that scenes may share it.
+ */
 export interface Scene {
   layout: Layout;
-  things: readonly Thing[];
-  /** What each thing was made from: equal inputs, equal thing. */
-  made: ReadonlyMap<string, { readonly from: readonly unknown[]; readonly thing: Thing }>;
-  pairs: ReadonlyMap<string, MeasuredPair>;
+  cast: Cast;
+  rules: CompiledRules;
+  /** Ranks of every selector for each thing, by its number. */
+  ranks: readonly Int8Array[];
+  /** World boxes of all things, six numbers each. */
+  boxes: Float64Array;
+  /** All pairs that have a row, in no order that matters. */
+  pairs: readonly Pair[];
   report: GapReport;
 }
 
-/** What two things measured to, before rules: kept while both stay as they are. */
-interface MeasuredPair {
-  readonly a: Thing;
-  readonly b: Thing;
-  /** Null beyond the reach it was measured to. */
-  readonly measured: Measured | null;
-  readonly reach: number;
+/** A row of the ledger or of the trusted pairs, and the numbers of the two things it is about. */
+interface Pair {
+  readonly a: number;
+  readonly b: number;
+  readonly gap: Gap | null;
+  readonly trusted: TrustedGap | null;
 }
 
-interface Measured {
-  readonly distance: number;
-  readonly pointA: readonly [number, number, number];
-  readonly pointB: readonly [number, number, number];
-  readonly depthIsEstimate: boolean;
-  readonly worst: number;
-  readonly shares: { readonly movement: number; readonly plusMinus: number; readonly growth: number };
-  readonly moving: boolean;
-  readonly notCovered: readonly string[];
-}
-
-/** Everything measured. Cost: about 10 ms for 40 parts, most of it building pieces. */
+/** Everything measured. */
 export function buildScene(layout: Layout): Scene {
   return nextScene(null, layout);
 }
 
-/** Takes a scene to the layout a diff leads to; afterwards it equals a scene built anew, to the bit. */
-export function updateScene(scene: Scene, layout: Layout, diff?: Diff): void {
-  Object.assign(scene, nextScene(scene, diff && layout === scene.layout ? applyDiff(layout, diff) : layout));
+/**
+ * Takes a scene to another layout; afterwards it equals a scene built anew, to the bit. Costs what changed: items that are the same objects
+ * as before are not looked at again.
+ */
+export function updateScene(scene: Scene, layout: Layout, _diff?: Diff): void {
+  Object.assign(scene, nextScene(scene, layout));
 }
 
 /** A new scene for another layout that shares what is alike with this one, which stays as it is: for previews while dragging. */
 export function previewScene(scene: Scene, layout: Layout): Scene {
   return nextScene(scene, layout);
+}
+
+/**
+ * What a scene would be with some items moved by a vector, mm, as the command "move" moves them; null where that is refused. The scene itself stays
+ * as it is, so there is nothing to put back.
+ * @example gapsOf(previewMove(scene, [{ list: "parts", key: "muffler-left" }], [0, -20, 0])!, "muffler-left")
+ */
+export function previewMove(scene: Scene, items: readonly { readonly list: ListName; readonly key: string }[], by: readonly [number, number, number]): Scene | null {
+  const moved = applyCommand(scene.layout, { kind: "move", items: [...items], by: [...by] });
+  return moved.ok ? nextScene(scene, moved.layout) : null;
 }
 
 /** All gaps of a layout, least margin first. */
@@ -72,185 +78,196 @@ export function gapsOf(scene: Scene, key: string): Gap[] {
 }
 
 function nextScene(before: Scene | null, layout: Layout): Scene {
-  const made = makeThings(before, layout);
-  const things = [...made.values()].map((entry) => entry.thing);
-  const rules = layout.rules;
-  const farthestRule = Math.max(rules.gap, 0, ...rules.pairs.map((rule) => rule.gap));
-  const reach = Math.max(rules.near, farthestRule + rules.band);
-  const contacts = contactsOf(layout.contacts);
+  const cast = castOf(layout, before?.cast ?? null);
+  const { things } = cast;
+  const sameRules = before !== null && before.layout.rules === layout.rules && before.layout.contacts === layout.contacts;
+  const rules = before !== null && before.layout.rules === layout.rules ? before.rules : compileRules(layout.rules);
+  const oldNumber = numbersBefore(before?.cast.things ?? [], things);
+  const ranks = things.map((thing, i) => {
+    const old = oldNumber[i]!;
+    return old >= 0 && before!.rules === rules && before!.cast.things[old] === thing ? before!.ranks[old]! : ranksOf(rules, thing);
+  });
+  const boxes = new Float64Array(6 * things.length);
+  things.forEach((thing, i) => boxes.set(thing.box, 6 * i));
 
-  const pairs = new Map<string, MeasuredPair>();
+  const next = { layout, cast, rules, ranks, boxes };
+  const pairs: Pair[] = [];
+  const fresh: Pair[] = [];
+  if (sameRules) {
+    const touched = Uint8Array.from(things, (thing, i) => (oldNumber[i]! >= 0 && before.cast.things[oldNumber[i]!] === thing ? 0 : 1));
+    keepPairs(before, oldNumber, touched, pairs);
+    measureTouched(next, touched, fresh);
+  } else {
+    measureAll(next, fresh);
+  }
+  pairs.push(...fresh);
+  return { ...next, pairs, report: reportFrom(pairs, fresh, sameRules ? before.report : null) };
+}
+
+/** For each thing its number in the scene before, or -1 where its key is new. */
+function numbersBefore(before: readonly Thing[], things: readonly Thing[]): Int32Array {
+  const out = new Int32Array(things.length).fill(-1);
+  let same = before.length === things.length;
+  for (let i = 0; same && i < things.length; i++) same = before[i]!.key === things[i]!.key;
+  if (same) return out.map((_, i) => i);
+  const numbers = new Map(before.map((thing, i) => [thing.key, i]));
+  for (let i = 0; i < things.length; i++) out[i] = numbers.get(things[i]!.key) ?? -1;
+  return out;
+}
+
+/** Takes over the pairs of which both things are untouched; one whose things changed places is touched. */
+function keepPairs(before: Scene, oldNumber: Int32Array, touched: Uint8Array, pairs: Pair[]): void {
+  const newNumber = new Int32Array(before.cast.things.length).fill(-1);
+  let last = -1;
+  oldNumber.forEach((old, i) => {
+    if (old < 0) return;
+    // Which of a pair is a is a matter of the order of things: one that others overtook is measured again.
+    if (old < last) touched[i] = 1;
+    else last = old;
+    newNumber[old] = i;
+  });
+  for (const pair of before.pairs) {
+    const a = newNumber[pair.a]!;
+    const b = newNumber[pair.b]!;
+    if (a < 0 || b < 0 || touched[a] === 1 || touched[b] === 1) continue;
+    pairs.push(a === pair.a && b === pair.b ? pair : { ...pair, a, b });
+  }
+}
+
+type Stage = Pick<Scene, "layout" | "cast" | "rules" | "ranks" | "boxes">;
+
+/** mm: boxes may be off by rounding. */
+const BOX_SLACK = 1e-6;
+
+function boxesWithin(boxes: Float64Array, i: number, j: number, reach: number): boolean {
+  const p = 6 * i;
+  const q = 6 * j;
+  let square = 0;
+  for (let k = 0; k < 3; k++) {
+    const apart = Math.max(boxes[q + k]! - boxes[p + 3 + k]!, boxes[p + k]! - boxes[q + 3 + k]!);
+    if (apart > 0) square += apart * apart;
+  }
+  return square <= (reach + BOX_SLACK) * (reach + BOX_SLACK);
+}
+
+/** Farthest that any pair of this layout is listed from, mm. */
+function farthestReach({ rules }: Stage): number {
+  return Math.max(rules.rules.near, rules.largest + rules.rules.band);
+}
+
+function measureAll(stage: Stage, out: Pair[]): void {
+  const { boxes } = stage;
+  const n = stage.cast.things.length;
+  const reach = farthestReach(stage);
+  const contacts = contactPairs(stage, null, out);
+  const order = Int32Array.from({ length: n }, (_, i) => i).sort((i, j) => boxes[6 * i]! - boxes[6 * j]! || i - j);
+  for (let r = 0; r < n; r++) {
+    const i = order[r]!;
+    const end = boxes[6 * i + 3]! + reach + BOX_SLACK;
+    for (let s = r + 1; s < n && boxes[6 * order[s]!]! <= end; s++) {
+      const j = order[s]!;
+      if (boxesWithin(boxes, i, j, reach)) measureInto(stage, Math.min(i, j), Math.max(i, j), contacts, out);
+    }
+  }
+}
+
+/** Every pair that a touched thing is in. */
+function measureTouched(stage: Stage, touched: Uint8Array, out: Pair[]): void {
+  if (!touched.includes(1)) return;
+  const { boxes } = stage;
+  const reach = farthestReach(stage);
+  const contacts = contactPairs(stage, touched, out);
+  for (let i = 0; i < touched.length; i++) {
+    if (touched[i] === 0) continue;
+    for (let j = 0; j < touched.length; j++) {
+      if (j === i || (touched[j] === 1 && j < i)) continue;
+      if (boxesWithin(boxes, i, j, reach)) measureInto(stage, Math.min(i, j), Math.max(i, j), contacts, out);
+    }
+  }
+}
+
+/** Named contacts, however far apart: their pairs by number, those of touched things (or all) measured. */
+function contactPairs(stage: Stage, touched: Uint8Array | null, out: Pair[]): ReadonlySet<number> {
+  const { things } = stage.cast;
+  const named = new Set<number>();
+  if (stage.layout.contacts.length === 0) return named;
+  const numbers = new Map(things.map((thing, i) => [thing.key, i]));
+  for (const contact of stage.layout.contacts) {
+    const one = numbers.get(contact.between[0]);
+    const other = numbers.get(contact.between[1]);
+    if (one === undefined || other === undefined || one === other) continue;
+    const a = Math.min(one, other);
+    const b = Math.max(one, other);
+    const code = a * things.length + b;
+    if (named.has(code) || neverChecked(things[a]!, things[b]!)) continue;
+    named.add(code);
+    if (touched === null || touched[a] === 1 || touched[b] === 1) trustInto(things, a, b, reasonOf(contact), Infinity, out);
+  }
+  return named;
+}
+
+function trustInto(things: readonly Thing[], a: number, b: number, why: string, reach: number, out: Pair[]): void {
+  const measured = measureTrusted(things[a]!, things[b]!, reach);
+  if (measured === null) return;
+  const { distance, pointA, pointB } = measured;
+  out.push({ a, b, gap: null, trusted: { a: things[a]!.key, b: things[b]!.key, distance, why, pointA, pointB } });
+}
+
+/** Measures one pair and keeps its row, if it has one. */
+function measureInto(stage: Stage, i: number, j: number, contacts: ReadonlySet<number>, out: Pair[]): void {
+  const { things } = stage.cast;
+  const a = things[i]!;
+  const b = things[j]!;
+  if (contacts.has(i * things.length + j) || neverChecked(a, b)) return;
+  const { near, band } = stage.rules.rules;
+  const trust = trustOf(a, b);
+  if (trust !== null) return trustInto(things, i, j, trust, near, out);
+  const movement = pairMovement(a, b);
+  const room = a.is === "room" ? a : b.is === "room" ? b : null;
+  const need = room ? { gap: 0, why: `${room.name}: must stay free`, overruled: [] } : strongestRule(stage.rules, stage.ranks[i]!, stage.ranks[j]!, movement.moving);
+  const reach = Math.max(near, need.gap + band);
+  if (!boxesWithin(stage.boxes, i, j, reach)) return;
+  const measured = measurePair(a, b, movement, reach);
+  if (measured === null) return;
+  const margin = measured.worst - need.gap;
+  const { notCovered } = movement;
+  const gap: Gap = {
+    a: a.key, b: b.key, distance: measured.distance, worst: measured.worst, required: need.gap, margin,
+    verdict: verdictOf(measured.distance, measured.worst, margin, band, notCovered.length === 0),
+    pointA: measured.pointA, pointB: measured.pointB, why: need.why, shares: measured.shares, provisional: a.guessed || b.guessed,
+    ...(measured.depthIsEstimate ? { depthIsEstimate: true } : {}),
+    ...(need.overruled.length > 0 ? { overruled: need.overruled } : {}),
+    ...(notCovered.length > 0 ? { notCovered } : {}),
+  };
+  out.push({ a: i, b: j, gap, trusted: null });
+}
+
+/** Rows in order: least margin first, ties by key. What is already in order is kept so and only added to. */
+function reportFrom(pairs: readonly Pair[], fresh: readonly Pair[], before: GapReport | null): GapReport {
   const gaps: Gap[] = [];
   const trusted: TrustedGap[] = [];
-  for (const [i, j] of candidates(things, reach)) {
-    const a = things[i]!;
-    const b = things[j]!;
-    if (neverChecked(a, b)) continue;
-    const name = `${a.key}|${b.key}`;
-    const known = before?.pairs.get(name);
-    const pair = known && known.a === a && known.b === b && known.reach === reach ? known : { a, b, reach, measured: measurePair(a, b, reach) };
-    pairs.set(name, pair);
-    if (pair.measured) enter(pair.measured, a, b, layout, contacts, gaps, trusted);
+  if (before === null) collect(pairs, gaps, trusted);
+  else {
+    const kept = new Set<Gap | TrustedGap>();
+    for (const pair of pairs) kept.add((pair.gap ?? pair.trusted)!);
+    for (const gap of before.gaps) if (kept.has(gap)) gaps.push(gap);
+    for (const one of before.trusted) if (kept.has(one)) trusted.push(one);
+    collect(fresh, gaps, trusted);
   }
-  gaps.sort((x, y) => x.margin - y.margin || (x.a < y.a ? -1 : x.a > y.a ? 1 : 0) || (x.b < y.b ? -1 : x.b > y.b ? 1 : 0));
-  trusted.sort((x, y) => (x.a < y.a ? -1 : x.a > y.a ? 1 : x.b < y.b ? -1 : 1));
+  gaps.sort((x, y) => x.margin - y.margin || byKeys(x, y));
+  trusted.sort(byKeys);
   const counts: Record<Verdict, number> = { touch: 0, rub: 0, short: 0, tight: 0, clear: 0 };
   for (const gap of gaps) counts[gap.verdict]++;
-  return { layout, things, made, pairs, report: { gaps, trusted, counts } };
+  return { gaps, trusted, counts };
 }
 
-/** Things in document order: parts, generated tyres, runs, shafts, rooms. */
-function makeThings(before: Scene | null, layout: Layout): Map<string, { from: readonly unknown[]; thing: Thing }> {
-  const made = new Map<string, { from: readonly unknown[]; thing: Thing }>();
-  const make = (key: string, from: readonly unknown[], build: () => Thing) => {
-    const known = before?.made.get(key);
-    const same = known && known.from.length === from.length && known.from.every((value, i) => Object.is(value, from[i]));
-    made.set(key, same ? known : { from, thing: build() });
-  };
-  const sameTyres = before && before.layout.chassis === layout.chassis && before.layout.parts.length === layout.parts.length && before.layout.parts.every((part, i) => part.key === layout.parts[i]!.key);
-  const tyres = sameTyres ? tyresOf.get(before.layout)! : generatedTyres(layout);
-  tyresOf.set(layout, tyres);
-  const parts = new Map<string, Part>([...layout.parts, ...tyres].map((part) => [part.key, part]));
-  const carriers = (part: Part | undefined): unknown[] => {
-    const list: unknown[] = [];
-    for (let at = part; at && list.length < 2000; at = at.carriedBy === null ? undefined : parts.get(at.carriedBy)) list.push(at);
-    return list;
-  };
-  const chassis = layout.chassis;
-  const generated = new Set(tyres.map((tyre) => tyre.key));
-  for (const part of parts.values()) {
-    make(part.key, [...carriers(part), chassis], () => partThing(part, chainOf(part, parts, chassis), generated.has(part.key)));
+function collect(pairs: readonly Pair[], gaps: Gap[], trusted: TrustedGap[]): void {
+  for (const pair of pairs) {
+    if (pair.gap !== null) gaps.push(pair.gap);
+    if (pair.trusted !== null) trusted.push(pair.trusted);
   }
-  for (const run of layout.runs) {
-    const owners = run.nodes.flatMap((node) => (node.on === undefined ? [] : carriers(parts.get(node.on.split(".")[0]!))));
-    make(run.key, [run, ...(run.carriedBy === null ? [] : carriers(parts.get(run.carriedBy))), ...owners, chassis], () => runThing(run, parts, chassis));
-  }
-  for (const shaft of layout.shafts) {
-    if (shaft.diameter === undefined) continue;
-    const tyre = shaft.wheel === undefined ? undefined : parts.get(`tyre-${shaft.wheel}`);
-    make(shaft.key, [shaft, ...carriers(tyre), chassis], () => shaftThing(shaft, tyre ? chainOf(tyre, parts, chassis) : null));
-  }
-  for (const part of layout.parts) {
-    for (const room of part.roomFor) {
-      make(`${part.key}.${room.key}`, [room, ...carriers(part), chassis], () => roomThing(part, room, chainOf(part, parts, chassis)));
-    }
-  }
-  return made;
 }
 
-/** Generated tyres of a layout, kept so that an unchanged chassis gives the same objects. */
-const tyresOf = new WeakMap<Layout, Part[]>();
-
-/** Pairs of things with blocks near enough, each once, lower index first, in order. */
-function candidates(things: readonly Thing[], reach: number): [number, number][] {
-  const owner: number[] = [];
-  const bodies = things.flatMap((thing, i) => thing.blocks.map((block) => {
-    owner.push(i);
-    return block.body;
-  }));
-  if (bodies.length === 0) return [];
-  const sweep = createSweep(bodies, owner.map((i) => things[i]!.reach));
-  const n = things.length;
-  const seen = new Set<number>();
-  candidatePairs(sweep, reach, (p, q) => {
-    const i = Math.min(owner[p]!, owner[q]!);
-    const j = Math.max(owner[p]!, owner[q]!);
-    if (i !== j) seen.add(i * n + j);
-  });
-  return [...seen].sort((x, y) => x - y).map((code) => [Math.floor(code / n), code % n]);
-}
-
-const drawnScratch = createMeasure();
-const worstScratch = createMeasure();
-
-function blocksAgainst(thing: Thing, other: Thing): readonly Block[] {
-  return thing.against.get(other.owner) ?? thing.blocks;
-}
-
-/** Drawn and worst distance of two things over all their blocks; null where worst is beyond the reach. */
-function measurePair(a: Thing, b: Thing, reach: number): Measured | null {
-  const scalars = a.plusMinus + b.plusMinus;
-  let worst = Infinity;
-  let drawn = Infinity;
-  let pointA: [number, number, number] = [0, 0, 0];
-  let pointB: [number, number, number] = [0, 0, 0];
-  let depthIsEstimate = false;
-  let moving = false;
-  let shares = { movement: 0, plusMinus: 0, growth: 0 };
-  const notCovered = new Set<string>([...a.notCovered, ...b.notCovered]);
-  const blocksA = blocksAgainst(a, b);
-  const blocksB = blocksAgainst(b, a);
-  for (const p of blocksA) {
-    for (const q of blocksB) {
-      const relative = movementOf(p, q);
-      moving ||= !relative.still;
-      for (const word of relative.notCovered) notCovered.add(word);
-    }
-  }
-  for (const p of blocksA) {
-    for (const q of blocksB) {
-      const relative = movementOf(p, q);
-      const growth = p.growth + q.growth;
-      const travel = relative.still ? null : relative.travel;
-      measureBodies(p.grown ?? p.body, q.grown ?? q.body, travel, reach + scalars + growth, worstScratch);
-      const worstHere = worstScratch.distance - scalars - growth;
-      if (worstHere <= reach && worstHere < worst) {
-        worst = worstHere;
-        shares = sharesOf(p, q, travel, worstScratch.distance, scalars, growth);
-      }
-      measureBodies(p.body, q.body, null, Math.min(drawn, Infinity), drawnScratch);
-      if (drawnScratch.distance < drawn) {
-        drawn = drawnScratch.distance;
-        pointA = copyPoint(drawnScratch.pointA);
-        pointB = copyPoint(drawnScratch.pointB);
-        depthIsEstimate = drawnScratch.depthIsEstimate;
-      }
-    }
-  }
-  if (worst > reach || drawn === Infinity) return null;
-  // itemised from the drawn least distance: what is left over of another block's being nearer when moved counts as movement
-  shares = { ...shares, movement: drawn - worst - shares.plusMinus - shares.growth };
-  if (Math.abs(shares.movement) < 1e-9) shares = { ...shares, movement: 0 };
-  return { distance: drawn, pointA, pointB, depthIsEstimate, worst, shares, moving, notCovered: [...notCovered].sort() };
-}
-
-function copyPoint(p: Measure["pointA"]): [number, number, number] {
-  return [p[0]!, p[1]!, p[2]!];
-}
-
-function movementOf(p: Block, q: Block): RelativeMovement {
-  return hullOfMovements(p.chains.flatMap((a) => q.chains.map((b) => relativeMovement(a, b))));
-}
-
-const shareScratch = createMeasure();
-
-function sharesOf(p: Block, q: Block, travel: RelativeMovement["travel"] | null, grownAndMoved: number, scalars: number, growth: number): { movement: number; plusMinus: number; growth: number } {
-  let plusMinus = scalars;
-  if (p.grown || q.grown) {
-    measureBodies(p.body, q.body, travel, Infinity, shareScratch);
-    plusMinus += shareScratch.distance - grownAndMoved;
-  }
-  return { movement: 0, plusMinus, growth };
-}
-
-/** Turns a measured pair into a ledger row or a trusted one. */
-function enter(m: Measured, a: Thing, b: Thing, layout: Layout, contacts: Contacts, gaps: Gap[], trusted: TrustedGap[]): void {
-  const trust = trustOf(a, b, contacts);
-  if (trust !== null) {
-    trusted.push({ a: a.key, b: b.key, distance: m.distance, why: trust, pointA: m.pointA, pointB: m.pointB });
-    return;
-  }
-  const room = a.is === "room" || b.is === "room";
-  const need = room ? { gap: 0, why: `${(a.is === "room" ? a : b).name}: must stay free`, overruled: [] } : requiredGap(layout.rules, a, b, m.moving);
-  if (m.worst > Math.max(layout.rules.near, need.gap + layout.rules.band)) return;
-  const margin = m.worst - need.gap;
-  const guess = (thing: Thing) => thing.source.how === "estimate" || thing.source.how === "reserved";
-  gaps.push({
-    a: a.key, b: b.key, distance: m.distance, worst: m.worst, required: need.gap, margin,
-    verdict: verdictOf(m.distance, m.worst, margin, layout.rules.band, m.notCovered.length === 0),
-    pointA: m.pointA, pointB: m.pointB, why: need.why, shares: m.shares, provisional: guess(a) || guess(b),
-    ...(m.depthIsEstimate ? { depthIsEstimate: true } : {}),
-    ...(need.overruled.length > 0 ? { overruled: need.overruled } : {}),
-    ...(m.notCovered.length > 0 ? { notCovered: m.notCovered } : {}),
-  });
+function byKeys(x: { readonly a: string; readonly b: string }, y: { readonly a: string; readonly b: string }): number {
+  return (x.a < y.a ? -1 : x.a > y.a ? 1 : 0) || (x.b < y.b ? -1 : x.b > y.b ? 1 : 0);
 }

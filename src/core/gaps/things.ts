@@ -1,25 +1,32 @@
-import { buildBody, setPose, type Body } from "../geometry/body.ts";
-import { IDENTITY, type Piece, type Pose } from "../geometry/piece.ts";
+import { buildBody, type Body } from "../geometry/body.ts";
 import { partPieces, solidPieces } from "../geometry/solids.ts";
 import { cutTube, tubePath, tubePieces, type TubePath, type TubePiece } from "../geometry/tubes.ts";
 import { poseOf } from "../geometry/turn.ts";
 import type { Layout, Part, Run, Shaft, Source } from "../layout/schema.ts";
-import { chainOf, greatestTravel, runChain, type Chain } from "./movement.ts";
+import { cutByGrowth, grownPieces, growthOf } from "./growth.ts";
+import { chainOf, outboardChain, runChain, wholeTravel, type Chain } from "./movement.ts";
+import { movedBody, placedBody } from "./placed-body.ts";
 import type { RuleSide } from "./rules.ts";
-import { greatestPlusMinus, grownByPlusMinus, growthOf, scalarPlusMinus } from "./tolerance.ts";
+import { grownByPlusMinus, scalarPlusMinus } from "./tolerance.ts";
 
-/** Pieces of one thing that move alike: a part has one block, a run one for each pair of carriers its legs run between. */
+/** Pieces of one thing that move alike: a part has one block, a run one for each pair of carriers that its legs run between. */
 export interface Block {
+  /** As drawn. */
   readonly body: Body;
-  /** The body at its largest by a box plus-minus, or null. */
+  /** At its largest by a box plus-minus, or null. */
   readonly grown: Body | null;
+  /** Grown by a box plus-minus and by heat, or null where nothing grows by heat. */
+  readonly hot: {
+    /** In stretches along which growth hardly rises: what worst is measured from while apart. */
+    readonly stretches: Body;
+    /** In the pieces as drawn, each at its greatest growth: for depths. */
+    readonly whole: Body;
+  } | null;
   /** What carries it: one chain, or the two of a leg between unlike ends. */
   readonly chains: readonly Chain[];
-  /** Thermal growth taken off, mm. */
-  readonly growth: number;
 }
 
-/** Everything that has gaps: a part, a run, a shaft, or room that must stay free. */
+/** Everything that has gaps: a part, a run, a shaft, or room that must stay free. Never changed once made. */
 export interface Thing extends RuleSide {
   readonly name: string;
   readonly is: "part" | "run" | "shaft" | "room";
@@ -28,55 +35,75 @@ export interface Thing extends RuleSide {
   readonly generated: boolean;
   /** With a shaft: the tyre it drives. */
   readonly wheel: string | null;
-  readonly source: Source;
+  /** Its size is a guess. */
+  readonly guessed: boolean;
+  /** Taken off every gap, mm. */
   readonly plusMinus: number;
   readonly blocks: readonly Block[];
   /** Against these owners the blocks are others: stretches near clips and bound ends left out. */
   readonly against: ReadonlyMap<string, readonly Block[]>;
-  /** Named in every pair of it: what is not covered. */
+  /** What no pair of it covers. */
   readonly notCovered: readonly string[];
-  /** Farthest it may go, be larger or grow, mm: for the broad phase. */
-  readonly reach: number;
+  /** Everywhere it may be: low x, y, z, high x, y, z, mm, by movement, tolerance and growth. */
+  readonly box: readonly number[];
 }
 
-const posed = (pieces: readonly Piece[], pose: Pose): Body => {
-  const body = buildBody(pieces);
-  if (pose !== IDENTITY) setPose(body, pose);
-  return body;
-};
+const isGuess = (source: Source): boolean => source.how === "estimate" || source.how === "reserved";
+const NO_EXEMPTIONS: ReadonlyMap<string, readonly Block[]> = new Map();
 
-export function partThing(part: Part, chain: Chain, generated: boolean): Thing {
-  const pieces = partPieces(part);
+function boxOf(blocks: readonly Block[], plusMinus: number): number[] {
+  const out = [Infinity, Infinity, Infinity, -Infinity, -Infinity, -Infinity];
+  for (const block of blocks) {
+    const { boxes } = block.hot?.whole ?? block.grown ?? block.body;
+    const travel = wholeTravel(block.chains);
+    for (let k = 0; k < 3; k++) {
+      out[k] = Math.min(out[k]!, boxes[k]! + travel[k]! - plusMinus);
+      out[k + 3] = Math.max(out[k + 3]!, boxes[k + 3]! + travel[k + 3]! + plusMinus);
+    }
+  }
+  return out;
+}
+
+/** @param before the same part as it was: where its solids and tolerance are unchanged its bodies are only moved */
+export function partThing(part: Part, chain: Chain, generated: boolean, before?: { readonly part: Part; readonly thing: Thing }): Thing {
   const pose = poseOf(part);
-  const grown = grownByPlusMinus(pieces, part.source);
+  const old = before?.part.solids === part.solids && before.part.source === part.source ? before.thing.blocks[0] : undefined;
+  const pieces = old ? [] : partPieces(part);
+  const grown = old ? null : grownByPlusMinus(pieces, part.source);
+  const block: Block = {
+    body: old ? movedBody(old.body, pose) : placedBody(pieces, pose),
+    grown: old ? old.grown && movedBody(old.grown, pose) : grown && placedBody(grown, pose),
+    hot: null,
+    chains: [chain],
+  };
+  const plusMinus = scalarPlusMinus(part.source);
   return {
     key: part.key, name: part.name, is: "part", kind: part.kind, group: part.group, owner: part.key, generated, wheel: null,
     hot: part.heat?.surface !== undefined, limited: part.heat?.limit !== undefined,
-    source: part.source, plusMinus: scalarPlusMinus(part.source),
-    blocks: [{ body: posed(pieces, pose), grown: grown && posed(grown, pose), chains: [chain], growth: 0 }],
-    against: new Map(), notCovered: [], reach: greatestTravel(chain) + greatestPlusMinus(part.source),
+    guessed: isGuess(part.source), plusMinus, blocks: [block], against: NO_EXEMPTIONS, notCovered: [], box: boxOf([block], plusMinus),
   };
 }
 
-/** Room that must stay free: carried like its part, never hot, no tolerance of its own. */
-export function roomThing(part: Part, room: Part["roomFor"][number], chain: Chain): Thing {
+/** Room that must stay free: carried like its part, never hot, no tolerance of its own, a guess where its part is one. */
+export function roomThing(part: Part, room: Part["roomFor"][number], chain: Chain, before?: { readonly room: Part["roomFor"][number]; readonly thing: Thing }): Thing {
+  const pose = poseOf(part);
+  const old = before?.room === room ? before.thing.blocks[0] : undefined;
+  const block: Block = { body: old ? movedBody(old.body, pose) : placedBody(room.solids.flatMap(solidPieces), pose), grown: null, hot: null, chains: [chain] };
   return {
     key: `${part.key}.${room.key}`, name: room.name, is: "room", kind: "room", group: "", owner: part.key, generated: false, wheel: null, hot: false, limited: false,
-    source: { how: part.source.how, plusMinus: 0 }, plusMinus: 0,
-    blocks: [{ body: posed(room.solids.flatMap(solidPieces), poseOf(part)), grown: null, chains: [chain], growth: 0 }],
-    against: new Map(), notCovered: [], reach: greatestTravel(chain),
+    guessed: isGuess(part.source), plusMinus: 0, blocks: [block], against: NO_EXEMPTIONS, notCovered: [], box: boxOf([block], 0),
   };
 }
 
+/** A shaft as one straight tube between its joints. The inboard one moves with nothing, the outboard one with its wheel: the whole by the box hull of both. */
 export function shaftThing(shaft: Shaft, wheelChain: Chain | null): Thing {
   const nodes = [{ key: "inboard", at: shaft.inboard }, { key: "outboard", at: shaft.outboard }];
   const pieces = tubePieces(tubePath({ diameter: shaft.diameter!, bendRadius: 0, nodes, legs: [] })).map((tube) => tube.piece);
-  const ends: Chain[] = wheelChain ? [[], wheelChain] : [[]];
+  const chains: Chain[] = wheelChain ? [[], outboardChain(shaft, wheelChain)] : [[]];
+  const block: Block = { body: buildBody(pieces), grown: null, hot: null, chains };
   return {
     key: shaft.key, name: shaft.name, is: "shaft", kind: "shaft", group: "", owner: shaft.key, generated: false, wheel: shaft.wheel ? `tyre-${shaft.wheel}` : null, hot: false, limited: false,
-    source: { how: "measured", plusMinus: 0 }, plusMinus: 0,
-    blocks: [{ body: buildBody(pieces), grown: null, chains: ends, growth: 0 }],
-    against: new Map(), notCovered: [], reach: Math.max(...ends.map(greatestTravel)),
+    guessed: false, plusMinus: 0, blocks: [block], against: NO_EXEMPTIONS, notCovered: [], box: boxOf([block], 0),
   };
 }
 
@@ -88,47 +115,56 @@ export function runThing(run: Run, parts: ReadonlyMap<string, Part>, chassis: La
   const path = tubePath(run);
   const tubes = tubePieces(path);
   const growth = growthOf(run, path);
-  const own = runChain(run.key, run.movement, carrierChain(run.carriedBy, parts, chassis));
+  const carrier = run.carriedBy === null ? undefined : parts.get(run.carriedBy);
+  const own = runChain(run.key, run.movement, carrier ? chainOf(carrier, parts, chassis) : []);
   const chainAt = new Map<string, Chain>(run.nodes.map((node) => {
-    const owner = node.on === undefined ? undefined : parts.get(node.on.split(".")[0]!);
+    const owner = node.on === undefined ? undefined : parts.get(ownerOf(node.on));
     return [node.key, owner ? chainOf(owner, parts, chassis) : own];
   }));
+  const body = (kept: readonly TubePiece[]): Body => buildBody(kept.map((tube) => tube.piece));
   const blocksOf = (kept: readonly TubePiece[]): Block[] => {
     const groups = new Map<string, TubePiece[]>();
     for (const tube of kept) {
-      const chains = [chainAt.get(tube.nodes[0])!, chainAt.get(tube.nodes[1])!];
-      const growthHere = growthAt(tube);
-      const name = `${chains.map((chain) => chain.map((link) => link.key).join(">")).join("|")}|${growthHere}`;
-      groups.set(name, [...(groups.get(name) ?? []), tube]);
+      const name = tube.nodes.map((node) => chainAt.get(node)![0]!.key).sort().join("|");
+      const group = groups.get(name);
+      if (group) group.push(tube);
+      else groups.set(name, [tube]);
     }
-    return [...groups.values()].map((group) => {
-      const pieces = group.map((tube) => tube.piece);
-      const [a, b] = [chainAt.get(group[0]!.nodes[0])!, chainAt.get(group[0]!.nodes[1])!];
-      const grown = grownByPlusMinus(pieces, run.source);
-      return { body: buildBody(pieces), grown: grown && buildBody(grown), chains: a[0]?.key === b[0]?.key ? [a] : [a, b], growth: growthAt(group[0]!) };
+    return [...groups.values()].map((group): Block => {
+      const [a, b] = group[0]!.nodes.map((node) => chainAt.get(node)!) as [Chain, Chain];
+      const grown = grownByPlusMinus(group.map((tube) => tube.piece), run.source);
+      const hot = (some: readonly TubePiece[]): Body => {
+        const pieces = some.map((tube) => tube.piece);
+        return buildBody(grownPieces(some, grownByPlusMinus(pieces, run.source) ?? pieces, growth, path));
+      };
+      return {
+        body: body(group), grown: grown && buildBody(grown), chains: a[0]!.key === b[0]!.key ? [a] : [a, b],
+        hot: growth.any ? { stretches: hot(cutByGrowth(group, growth, path)), whole: hot(group) } : null,
+      };
     });
   };
-  const growthAt = (tube: TubePiece) => (tube.leg < 0 ? (growth.atNode.get(tube.nodes[0]) ?? 0) : growth.onLeg[tube.leg]!);
 
   const exempt = new Map<string, { node: string; reach: number }[]>();
+  const leaveOut = (owner: string, node: string, reach: number) => exempt.set(owner, [...(exempt.get(owner) ?? []), { node, reach }]);
   for (const node of run.nodes) {
-    const owner = node.on?.split(".")[0];
-    if (owner !== undefined) exempt.set(owner, [...(exempt.get(owner) ?? []), { node: node.key, reach: BOUND_DIAMETERS * diameterAt(path, node.key) }]);
-    if (node.clip !== undefined) exempt.set(node.clip, [...(exempt.get(node.clip) ?? []), { node: node.key, reach: CLIP_REACH }]);
+    if (node.on !== undefined) leaveOut(ownerOf(node.on), node.key, BOUND_DIAMETERS * diameterAt(path, node.key));
+    if (node.clip !== undefined) leaveOut(node.clip, node.key, CLIP_REACH);
   }
-  const against = new Map([...exempt].map(([owner, from]) => [owner, blocksOf(cutTube(tubes, ...stretchesNear(path, from)))] as const));
+  const plusMinus = scalarPlusMinus(run.source);
+  const blocks = blocksOf(tubes);
   return {
     key: run.key, name: run.name, is: "run", kind: run.kind, group: run.group, owner: run.key, generated: false, wheel: null,
     hot: run.heat?.surface !== undefined || run.nodes.some((node) => node.surface !== undefined), limited: run.heat?.limit !== undefined,
-    source: run.source, plusMinus: scalarPlusMinus(run.source), blocks: blocksOf(tubes), against,
-    notCovered: growth.unknown ? ["growth"] : [],
-    reach: Math.max(...[...chainAt.values()].map(greatestTravel)) + greatestPlusMinus(run.source) + Math.max(0, ...growth.onLeg),
+    guessed: isGuess(run.source), plusMinus, blocks,
+    against: exempt.size === 0 ? NO_EXEMPTIONS : new Map([...exempt].map(([owner, from]) => [owner, blocksOf(cutTube(tubes, ...stretchesNear(path, from)))] as const)),
+    notCovered: growth.unknown ? ["growth"] : [], box: boxOf(blocks, plusMinus),
   };
 }
 
-function carrierChain(carrier: string | null, parts: ReadonlyMap<string, Part>, chassis: Layout["chassis"]): Chain {
-  const part = carrier === null ? undefined : parts.get(carrier);
-  return part ? chainOf(part, parts, chassis) : [];
+/** The part that a node's `on` names: "ecu" of "ecu.plug". */
+export function ownerOf(on: string): string {
+  const dot = on.indexOf(".");
+  return dot < 0 ? on : on.slice(0, dot);
 }
 
 function diameterAt(path: TubePath, node: string): number {
@@ -160,4 +196,3 @@ function stretchesNear(path: TubePath, from: readonly { node: string; reach: num
   }
   return [stretches, balls];
 }
-
