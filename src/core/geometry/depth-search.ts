@@ -381,13 +381,11 @@ export function searchDepth(
     addTriangle(a, pieceA, b, pieceB, travel, ki, jk, k);
     addTriangle(a, pieceA, b, pieceB, travel, ij, jk, ki);
   }
-  expansionsOfLast = expansions;
   SCRATCH[0] = 0;
   polish(a, pieceA, b, pieceB, travel);
   return BEST[0]!;
 }
 
-export let expansionsOfLast = 0;
 /** Whether the last search ended because no direction can be better, rather than because its budget was spent. */
 export let searchWasCertain = true;
 

@@ -1,5 +1,5 @@
 import type { Body } from "./body.ts";
-import { CORE, CORE_PRISM, CORE_RING, CORNERS, FACTS, START } from "./compile.ts";
+import { CORE, CORE_BOX, CORE_PRISM, CORE_RING, CORNERS, FACTS, START } from "./compile.ts";
 
 /** Facet normals and edges of a convex polytope, in the coordinates of its points: what separating axes are made of. */
 export interface Facets {
@@ -32,6 +32,9 @@ const length = (a: P): number => Math.sqrt(dot(a, a));
 export function facetsOf(body: Body, piece: number): Facets | null {
   const known = body.facets[piece];
   if (known !== undefined) return known;
+  if (body.facts[FACTS * piece + CORE] === CORE_BOX) {
+    return (body.facets[piece] = boxFacets(body.local, body.facts[FACTS * piece + START]! + 3));
+  }
   const points: P[] = [];
   const s = body.facts[FACTS * piece + START]!;
   const n = body.facts[FACTS * piece + CORNERS]!;
@@ -215,4 +218,34 @@ function wrap(
     }
   }
   return true;
+}
+
+/** Facets of a parallelepiped from its three half edges; its centre stands before them. */
+function boxFacets(local: Float64Array, at: number): Facets {
+  const h = [0, 1, 2].map((k) => [local[at + 3 * k]!, local[at + 3 * k + 1]!, local[at + 3 * k + 2]!] as const);
+  const unit = (v: readonly number[]): number[] => v.map((c) => c / Math.hypot(...v));
+  const faces = [0, 1, 2].map((k) => {
+    const [p, q] = [h[(k + 1) % 3]!, h[(k + 2) % 3]!];
+    const n = unit([p[1] * q[2] - p[2] * q[1], p[2] * q[0] - p[0] * q[2], p[0] * q[1] - p[1] * q[0]]);
+    const outward = n[0]! * h[k]![0] + n[1]! * h[k]![1] + n[2]! * h[k]![2] > 0;
+    return outward ? n : n.map((c) => -c);
+  });
+  const negated = (n: number[]): number[] => n.map((c) => -c);
+  const edges = [0, 1, 2].flatMap((k) => {
+    const [p, q] = [faces[(k + 1) % 3]!, faces[(k + 2) % 3]!];
+    return [p, negated(p)].flatMap((m) => [q, negated(q)].flatMap((n) => [...unit(h[k]!), ...m, ...n]));
+  });
+  const corners = [0, 1, 2].flatMap((k) =>
+    [1, -1].flatMap((s) => [0, 1, 2].map((i) => local[at - 3 + i]! + s * h[k]![i]!)),
+  );
+  const ends = [0, 1, 2].flatMap((k) => {
+    const [p, q] = [h[(k + 1) % 3]!, h[(k + 2) % 3]!];
+    return [1, -1].flatMap((s) => [1, -1].flatMap((t) => [0, 1, 2].map((i) => local[at - 3 + i]! + s * p[i]! + t * q[i]!)));
+  });
+  return {
+    normals: Float64Array.from(faces.flatMap((n) => [...n, ...negated(n)])),
+    edges: Float64Array.from(edges),
+    ends: Float64Array.from(ends),
+    corners: Float64Array.from(corners),
+  };
 }

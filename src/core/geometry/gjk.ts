@@ -27,7 +27,6 @@ const B = new Float64Array(3);
 const NAMES = new Float64Array(4);
 const WEIGHT = new Float64Array(4);
 /** Slots of the simplex found nearest by the last reduction, their weights, and its point. */
-export const STATS = new Float64Array(8);
 const KEEP = new Int32Array(4);
 const KEPT_WEIGHT = new Float64Array(4);
 const V = new Float64Array(3);
@@ -206,7 +205,6 @@ export function coreDistance(
   spineA = false,
   spineB = false,
 ): number {
-  STATS[0]!++;
   const p = a.middles;
   const q = b.middles;
   const leafA = NODE * a.facts[FACTS * pieceA + LEAF]!;
@@ -239,7 +237,6 @@ export function coreDistance(
   let best = Math.sqrt(square);
   let proven = 0;
   for (let step = 0; step < MOST_STEPS; step++) {
-    STATS[1]!++;
     const o = 3 * size;
     const nameA = supportAt(worldA, startA, coreA, cornersA, discsA, -vx, -vy, -vz, A, o);
     const nameB = supportAt(worldB, startB, coreB, cornersB, discsB, vx, vy, vz, B, 0);

@@ -160,7 +160,7 @@ describe("distance of round things", () => {
       const k = r > d / 2 ? d / 2 / r : 1;
       return [k * p[0], k * p[1], Math.max(-length / 2, Math.min(length / 2, p[2]))];
     };
-    const onBox = (...size: Vec3) => (p: Vec3): Vec3 => [0, 1, 2].map((k) => Math.max(-size[k]! / 2, Math.min(size[k]! / 2, p[k]!))) as unknown as Vec3;
+    const onBox = (...size: [number, number, number]) => (p: Vec3): Vec3 => [0, 1, 2].map((k) => Math.max(-size[k]! / 2, Math.min(size[k]! / 2, p[k]!))) as unknown as Vec3;
     const invert = (pose: Pose, p: Vec3): Vec3 => {
       const q = sub(p, pose.at);
       const m = pose.rotation;
@@ -248,7 +248,7 @@ describe("depth", () => {
   });
 
   it("is nothing where faces, edges or corners only touch", () => {
-    for (const where of [[75, 10, 5], [75, 75, 5], [75, 75, 75]] as const) {
+    for (const where of [[75, 10, 5], [75, 75, 5], [75, 75, 75]] as [number, number, number][]) {
       const m = measurePieces(box(100, 100, 100), at(0, 0, 0), box(50, 50, 50), at(...where));
       expect(Math.abs(m.distance)).toBeLessThan(1e-9);
       expect(Object.is(m.distance, -0)).toBe(false);
