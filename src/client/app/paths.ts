@@ -1,0 +1,10 @@
+/** Every page's address, once. */
+export const paths = {
+  signIn: "/sign-in",
+  builds: "/",
+  build: (buildId: string) => `/builds/${buildId}`,
+  bench: (buildId: string, layoutId: string) => `/builds/${buildId}/layouts/${layoutId}`,
+  sheets: (buildId: string, layoutId: string) => `/builds/${buildId}/layouts/${layoutId}/sheets`,
+  history: (buildId: string, layoutId: string) => `/builds/${buildId}/layouts/${layoutId}/history`,
+  method: "/method",
+} as const;
