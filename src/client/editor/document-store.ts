@@ -101,6 +101,7 @@ export interface Link {
   meaning(error: unknown): Meaning;
 }
 
+const nameOf = (item: { readonly list: string; readonly key: string }) => `${item.list}/${item.key}`;
 const MOST_STEPS = 500;
 const RETRY_MS = [1_000, 2_000, 4_000, 8_000, 15_000];
 
@@ -178,6 +179,11 @@ export function createDocumentStore(start: { readonly document: Layout; readonly
     try {
       for (let first = now().waiting[0]; first && !closed && !now().trouble; first = now().waiting[0]) {
         state.setState({ saveState: "saving" });
+        if (first.base < now().seq) {
+          // others changed things since it was given: theirs are looked at first
+          await takeUp();
+          continue;
+        }
         const answer = await link.send(first);
         accept(first, answer);
         if (now().seq < answer.seq) await takeUp();
@@ -231,27 +237,28 @@ export function createDocumentStore(start: { readonly document: Layout; readonly
   const raise = (trouble: Trouble) => state.setState({ saveState: "choice", trouble, away: null });
 
   /**
-   * Takes the changes after our seq onto what is confirmed, then what waits on top again.
-   * @param decided a command whose author has chosen it over whatever others did
+   * Takes the changes after our seq onto what is confirmed, then what waits on top again. A waiting command whose items nobody else touched since it was given may as well
+   * have been given now; the first one that somebody did touch is put to its author.
+   * @param decided items that the author has decided about, "list/key"
    */
-  const takeUp = async (decided?: string): Promise<void> => {
+  const takeUp = async (decided: ReadonlySet<string> = new Set()): Promise<void> => {
     const since = now().seq;
-    const changes = (await link.changesAfter(since)).filter((change) => change.seq > since);
+    const changes = await link.changesAfter(Math.min(since, ...now().waiting.map((one) => one.base)));
+    const fresh = changes.filter((change) => change.seq > since);
+    for (const change of fresh) confirmed = applyDiff(confirmed, change.diff);
+    const seq = fresh[fresh.length - 1]?.seq ?? since;
     const { document, waiting: before } = now();
-    for (const change of changes) confirmed = applyDiff(confirmed, change.diff);
-    const seq = changes[changes.length - 1]?.seq ?? since;
-    const touched = new Set(changes.filter((change) => !given.has(change.commandId)).flatMap((change) => change.diff.map((item) => `${item.list}/${item.key}`)));
     const taken = new Set(changes.map((change) => change.commandId));
     const waiting: Waiting[] = [];
     let clash: Waiting | undefined;
     for (const one of before) {
       if (taken.has(one.commandId)) continue;
-      const touches = one.commandId !== decided && readsAndWrites(one.command, document).some((item) => touched.has(`${item.list}/${item.key}`));
-      if (touches) clash ??= one;
-      // nobody touched what it touches: it may as well have been given now
-      waiting.push(clash || one.base === seq ? one : { ...one, base: seq });
+      const touched = new Set(changes.filter((change) => change.seq > one.base && !given.has(change.commandId)).flatMap((change) => change.diff.map(nameOf)));
+      const clashes = readsAndWrites(one.command, document).some((item) => touched.has(nameOf(item)) && !decided.has(nameOf(item)));
+      if (clashes) clash ??= one;
+      waiting.push(clashes || one.base === seq ? one : { ...one, base: seq });
     }
-    if (changes.length === 0 && decided === undefined) return;
+    if (fresh.length === 0 && waiting.every((one, i) => one === before[i]) && waiting.length === before.length && !clash) return;
     state.setState({ waiting, seq });
     show(onTop());
     void forget(before.filter((one) => taken.has(one.commandId)));
@@ -299,7 +306,7 @@ export function createDocumentStore(start: { readonly document: Layout; readonly
         show(onTop());
       }
       sending = true;
-      void takeUp(mine ? id : undefined)
+      void takeUp(new Set(mine ? readsAndWrites(trouble.waiting.command, now().document).map(nameOf) : []))
         .catch(stumble)
         .finally(() => (sending = false))
         .then(pump);
