@@ -38,17 +38,17 @@ export function castOf(layout: Layout, before: Cast | null): Cast {
   // Steering is all that a chain takes from the chassis: other edits of it leave things alone.
   const front = chassis.front.steer > 0;
   const rear = chassis.rear.steer > 0;
-  /** Appends a part and all that carry it. */
+  /** Appends what a chain is made of. Where carriers are is none of it: an engine may be moved without a look at what it carries. */
   const carriers = (part: Part | undefined, to: unknown[]): unknown[] => {
-    for (let at = part, n = 0; at && n < 2000; at = at.carriedBy === null ? undefined : parts.get(at.carriedBy), n++) to.push(at);
+    for (let at = part, n = 0; at && n < 2000; at = at.carriedBy === null ? undefined : parts.get(at.carriedBy), n++) to.push(at.key, at.movement, at.rock);
     return to;
   };
 
   for (const part of layout.parts) {
-    put(part.key, carriers(part, ["part", front, rear]), (old) =>
+    put(part.key, carriers(part, ["part", front, rear, part]), (old) =>
       partThing(part, chainOf(part, parts, chassis), false, old?.thing.is === "part" && !old.thing.generated ? { part: old.from[3] as Part, thing: old.thing } : undefined));
   }
-  for (const tyre of tyres) put(tyre.key, carriers(tyre, ["tyre", front, rear]), () => partThing(tyre, chainOf(tyre, parts, chassis), true));
+  for (const tyre of tyres) put(tyre.key, carriers(tyre, ["tyre", front, rear, tyre]), () => partThing(tyre, chainOf(tyre, parts, chassis), true));
   for (const run of layout.runs) {
     const from: unknown[] = ["run", front, rear, run];
     if (run.carriedBy !== null) carriers(parts.get(run.carriedBy), from);
@@ -62,7 +62,7 @@ export function castOf(layout: Layout, before: Cast | null): Cast {
   }
   for (const part of layout.parts) {
     for (const room of part.roomFor) {
-      put(`${part.key}.${room.key}`, carriers(part, ["room", front, rear, room]), (old) =>
+      put(`${part.key}.${room.key}`, carriers(part, ["room", front, rear, room, part]), (old) =>
         roomThing(part, room, chainOf(part, parts, chassis), old && { room: old.from[3] as Part["roomFor"][number], thing: old.thing }));
     }
   }

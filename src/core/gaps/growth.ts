@@ -79,16 +79,23 @@ function growthAt(growth: Growth, path: TubePath, tube: TubePiece, along: number
   return length > 0 ? from + (to - from) * Math.min(1, Math.max(0, along / length)) : Math.max(from, to);
 }
 
+/** Growth at the end of a stretch that is farther from the anchor, mm: never less than anywhere on it. */
+function growthOn(growth: Growth, path: TubePath, tube: TubePiece): number {
+  return Math.max(growthAt(growth, path, tube, tube.from), growthAt(growth, path, tube, tube.to));
+}
+
+/** The most that any of some tubes grows, mm. */
+export function mostGrowth(tubes: readonly TubePiece[], growth: Growth, path: TubePath): number {
+  return tubes.reduce((most, tube) => Math.max(most, growthOn(growth, path, tube)), 0);
+}
+
 /** Growth rises by no more than this within a stretch, mm: what worst may be pessimistic by. */
 export const GROWTH_STEP = 0.2;
 const MOST_STRETCHES = 200;
 
 /** Pieces as they are drawn, each a ball larger by the growth at its farther end: never less than the true growth. */
 export function grownPieces(tubes: readonly TubePiece[], pieces: readonly Piece[], growth: Growth, path: TubePath): Piece[] {
-  return pieces.map((piece, i) => {
-    const tube = tubes[i]!;
-    return { ...piece, radius: piece.radius + Math.max(growthAt(growth, path, tube, tube.from), growthAt(growth, path, tube, tube.to)) };
-  });
+  return pieces.map((piece, i) => ({ ...piece, radius: piece.radius + growthOn(growth, path, tubes[i]!) }));
 }
 
 /** Tubes cut into stretches along which growth rises by at most `GROWTH_STEP`. */

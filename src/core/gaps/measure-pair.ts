@@ -75,7 +75,7 @@ type Size = "drawn" | "grown" | "stretches" | "whole";
 function bodyAt(block: Block, size: Size): Body {
   if (size === "drawn") return block.body;
   if (size === "grown" || block.hot === null) return block.grown ?? block.body;
-  return size === "stretches" ? block.hot.stretches : block.hot.whole;
+  return size === "stretches" ? block.hot.stretches() : block.hot.whole();
 }
 
 /** Least signed distance over all blocks, swept by their movement, at a size; Infinity beyond the cut-off. */

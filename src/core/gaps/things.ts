@@ -3,7 +3,7 @@ import { partPieces, solidPieces } from "../geometry/solids.ts";
 import { cutTube, tubePath, tubePieces, type TubePath, type TubePiece } from "../geometry/tubes.ts";
 import { poseOf } from "../geometry/turn.ts";
 import type { Layout, Part, Run, Shaft, Source } from "../layout/schema.ts";
-import { cutByGrowth, grownPieces, growthOf } from "./growth.ts";
+import { cutByGrowth, grownPieces, growthOf, mostGrowth } from "./growth.ts";
 import { chainOf, outboardChain, runChain, wholeTravel, type Chain } from "./movement.ts";
 import { movedBody, placedBody } from "./placed-body.ts";
 import type { RuleSide } from "./rules.ts";
@@ -18,9 +18,11 @@ export interface Block {
   /** Grown by a box plus-minus and by heat, or null where nothing grows by heat. */
   readonly hot: {
     /** In stretches along which growth hardly rises: what worst is measured from while apart. */
-    readonly stretches: Body;
+    readonly stretches: () => Body;
     /** In the pieces as drawn, each at its greatest growth: for depths. */
-    readonly whole: Body;
+    readonly whole: () => Body;
+    /** The most that any of it grows, mm. */
+    readonly most: number;
   } | null;
   /** What carries it: one chain, or the two of a leg between unlike ends. */
   readonly chains: readonly Chain[];
@@ -54,11 +56,12 @@ const NO_EXEMPTIONS: ReadonlyMap<string, readonly Block[]> = new Map();
 function boxOf(blocks: readonly Block[], plusMinus: number): number[] {
   const out = [Infinity, Infinity, Infinity, -Infinity, -Infinity, -Infinity];
   for (const block of blocks) {
-    const { boxes } = block.hot?.whole ?? block.grown ?? block.body;
+    const { boxes } = block.grown ?? block.body;
     const travel = wholeTravel(block.chains);
+    const more = plusMinus + (block.hot?.most ?? 0);
     for (let k = 0; k < 3; k++) {
-      out[k] = Math.min(out[k]!, boxes[k]! + travel[k]! - plusMinus);
-      out[k + 3] = Math.max(out[k + 3]!, boxes[k + 3]! + travel[k + 3]! + plusMinus);
+      out[k] = Math.min(out[k]!, boxes[k]! + travel[k]! - more);
+      out[k + 3] = Math.max(out[k + 3]!, boxes[k + 3]! + travel[k + 3]! + more);
     }
   }
   return out;
@@ -122,6 +125,7 @@ export function runThing(run: Run, parts: ReadonlyMap<string, Part>, chassis: La
     return [node.key, owner ? chainOf(owner, parts, chassis) : own];
   }));
   const body = (kept: readonly TubePiece[]): Body => buildBody(kept.map((tube) => tube.piece));
+  const made = new Map<string, { readonly group: readonly TubePiece[]; readonly block: Block }>();
   const blocksOf = (kept: readonly TubePiece[]): Block[] => {
     const groups = new Map<string, TubePiece[]>();
     for (const tube of kept) {
@@ -130,17 +134,22 @@ export function runThing(run: Run, parts: ReadonlyMap<string, Part>, chassis: La
       if (group) group.push(tube);
       else groups.set(name, [tube]);
     }
-    return [...groups.values()].map((group): Block => {
+    return [...groups].map(([name, group]): Block => {
+      const known = made.get(name);
+      if (known && known.group.length === group.length && group.every((tube, i) => tube === known.group[i])) return known.block;
       const [a, b] = group[0]!.nodes.map((node) => chainAt.get(node)!) as [Chain, Chain];
       const grown = grownByPlusMinus(group.map((tube) => tube.piece), run.source);
-      const hot = (some: readonly TubePiece[]): Body => {
-        const pieces = some.map((tube) => tube.piece);
-        return buildBody(grownPieces(some, grownByPlusMinus(pieces, run.source) ?? pieces, growth, path));
-      };
-      return {
+      const hot = (some: () => readonly TubePiece[]) => once(() => {
+        const cut = some();
+        const pieces = cut.map((tube) => tube.piece);
+        return buildBody(grownPieces(cut, grownByPlusMinus(pieces, run.source) ?? pieces, growth, path));
+      });
+      const block: Block = {
         body: body(group), grown: grown && buildBody(grown), chains: a[0]!.key === b[0]!.key ? [a] : [a, b],
-        hot: growth.any ? { stretches: hot(cutByGrowth(group, growth, path)), whole: hot(group) } : null,
+        hot: growth.any ? { stretches: hot(() => cutByGrowth(group, growth, path)), whole: hot(() => group), most: mostGrowth(group, growth, path) } : null,
       };
+      made.set(name, known ? known : { group, block });
+      return block;
     });
   };
 
@@ -159,6 +168,12 @@ export function runThing(run: Run, parts: ReadonlyMap<string, Part>, chassis: La
     against: exempt.size === 0 ? NO_EXEMPTIONS : new Map([...exempt].map(([owner, from]) => [owner, blocksOf(cutTube(tubes, ...stretchesNear(path, from)))] as const)),
     notCovered: growth.unknown ? ["growth"] : [], box: boxOf(blocks, plusMinus),
   };
+}
+
+/** Made when first asked for: a body is worth its building only where something is near. */
+function once<T>(make: () => T): () => T {
+  let made: T | undefined;
+  return () => (made ??= make());
 }
 
 /** The part that a node's `on` names: "ecu" of "ecu.plug". */
