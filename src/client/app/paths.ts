@@ -8,3 +8,9 @@ export const paths = {
   history: (buildId: string, layoutId: string) => `/builds/${buildId}/layouts/${layoutId}/history`,
   method: "/method",
 } as const;
+
+/** The same as patterns for the router. */
+export const patterns = {
+  build: "/builds/:buildId",
+  layout: "/builds/:buildId/layouts/:layoutId",
+} as const;
