@@ -1,5 +1,6 @@
 import { createRequire } from "node:module";
 import PDFDocument from "pdfkit";
+import { arcPoints } from "#core/drawing/overlaps.ts";
 import { dashesOf, type Mark, type SheetPlan, type Stroke } from "#core/drawing/plan.ts";
 
 /** What the file says about itself. */
@@ -61,7 +62,7 @@ function inkMark(document: Doc, mark: Mark, letters: Letters): void {
     mark.points.forEach((p, i) => (i === 0 ? document.moveTo(p[0], p[1]) : document.lineTo(p[0], p[1])));
     if (mark.closed) document.closePath();
   } else if (mark.sweep === 360) document.circle(mark.centre[0], mark.centre[1], mark.radius);
-  else document.arc(mark.centre[0], mark.centre[1], mark.radius, (-mark.start * Math.PI) / 180, (-(mark.start + mark.sweep) * Math.PI) / 180, mark.sweep > 0);
+  else arcPoints(mark).forEach((p, i) => (i === 0 ? document.moveTo(p[0], p[1]) : document.lineTo(p[0], p[1])));
   const fill = mark.kind === "line" ? null : mark.fill;
   if (mark.stroke) pen(document, mark.stroke);
   if (fill && mark.stroke) document.fillAndStroke(fill, mark.stroke.ink);
