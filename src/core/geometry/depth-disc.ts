@@ -96,7 +96,7 @@ function circleOf(i: number, count: number): void {
   const gy = GENERATORS[3 * i + 1]!;
   const gz = GENERATORS[3 * i + 2]!;
   const length = Math.sqrt(gx * gx + gy * gy + gz * gz);
-  if (!(length > 0)) return;
+  if (!(length > NOTHING)) return;
   const x = gx / length;
   const y = gy / length;
   const z = gz / length;

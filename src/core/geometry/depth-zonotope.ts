@@ -1,6 +1,7 @@
 import type { Body } from "./body.ts";
 import { CORE, CORE_BOX, CORE_POINTS, CORNERS, FACTS, START } from "./compile.ts";
 import { tryDirection } from "./depth-search.ts";
+import { NOTHING } from "./support.ts";
 
 /**
  * Depth of boxes, segments and points, with any travel: A - B - T is a sum of segments about a centre (a zonotope), whose
@@ -40,7 +41,7 @@ export function addTravel(travel: Float64Array, count: number): number {
   for (let k = 0; k < 3; k++) {
     CENTRE[k] = CENTRE[k]! - (travel[k]! + travel[3 + k]!) / 2;
     const half = (travel[3 + k]! - travel[k]!) / 2;
-    if (half === 0) continue;
+    if (!(half > NOTHING)) continue;
     GENERATORS.fill(0, 3 * count, 3 * count + 3);
     GENERATORS[3 * count + k] = half;
     count++;
@@ -71,7 +72,7 @@ export function zonotopeDepth(a: Body, pieceA: number, b: Body, pieceB: number, 
       const square = x * x + y * y + z * z;
       if (!(square > 1e-24 * (gx * gx + gy * gy + gz * gz) * (hx * hx + hy * hy + hz * hz))) continue;
       const length = Math.sqrt(square);
-      if (!(length > 0)) continue;
+      if (!(length > NOTHING)) continue;
       x /= length;
       y /= length;
       z /= length;
@@ -95,7 +96,7 @@ export function zonotopeDepth(a: Body, pieceA: number, b: Body, pieceB: number, 
     const gx = count > 0 ? GENERATORS[0]! : CENTRE[0]!;
     const gy = count > 0 ? GENERATORS[1]! : CENTRE[1]!;
     const gz = count > 0 ? GENERATORS[2]! : CENTRE[2]!;
-    if (gx * gx + gy * gy + gz * gz > 0) {
+    if (gx * gx + gy * gy + gz * gz > NOTHING) {
       const [mx, my, mz] = [Math.abs(gx), Math.abs(gy), Math.abs(gz)];
       const x = mx <= my && mx <= mz ? 0 : my <= mz ? -gz : gy;
       const y = mx <= my && mx <= mz ? gz : my <= mz ? 0 : -gx;

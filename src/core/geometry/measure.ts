@@ -50,6 +50,8 @@ export function createPairCache(slots: number): PairCache {
 /** mm: pruning keeps anything this close to the best, so that the order of the search cannot decide the answer. */
 const SLACK = 1e-9;
 
+/** mm: less travel than this is none. */
+const NO_TRAVEL = 1e-12;
 const TRAVEL = new Float64Array(6);
 const PARTED = new Float64Array(6);
 /** From b to a along the gap (or against the shortest way out) of the best pair so far, unit length. */
@@ -60,13 +62,15 @@ let stackBound = new Float64Array(1024);
 
 function writeTravel(travel: TravelBox | null): Float64Array | null {
   if (travel === null) return null;
-  const { low, high } = travel;
-  if (low[0] === 0 && low[1] === 0 && low[2] === 0 && high[0] === 0 && high[1] === 0 && high[2] === 0) return null;
+  let any = false;
   for (let k = 0; k < 3; k++) {
-    TRAVEL[k] = low[k]!;
-    TRAVEL[3 + k] = high[k]!;
+    const low = travel.low[k]!;
+    const high = travel.high[k]!;
+    TRAVEL[k] = Math.abs(low) < NO_TRAVEL ? 0 : low;
+    TRAVEL[3 + k] = Math.abs(high) < NO_TRAVEL ? 0 : high;
+    if (TRAVEL[k] !== 0 || TRAVEL[3 + k] !== 0) any = true;
   }
-  return TRAVEL;
+  return any ? TRAVEL : null;
 }
 
 /**
