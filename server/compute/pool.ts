@@ -76,19 +76,21 @@ export function createPool(script: URL, size: number): Pool {
       clearTimeout(timer);
       worker.removeAllListeners("message");
       worker.removeAllListeners("error");
+      worker.off("exit", died);
       next.signal?.removeEventListener("abort", abort);
       if (reuse && !closed) idle.push(worker);
       else void worker.terminate();
       settle();
       pump();
     };
+    const died = () => finish(() => next.reject(new JobFault("died", "the worker ended")), false);
     const abort = () => finish(() => next.reject(new JobFault("cancelled", "cancelled")), false);
     const timer = setTimeout(() => finish(() => next.reject(new JobFault("deadline", "This took too long and was stopped.")), false), next.deadlineMs);
     next.signal?.addEventListener("abort", abort, { once: true });
     worker.once("message", (answer: { ok: boolean; value?: unknown; message?: string }) =>
       finish(() => (answer.ok ? next.resolve(answer.value) : next.reject(new JobFault("failed", answer.message ?? "failed"))), true));
     worker.once("error", (error: Error) => finish(() => next.reject(new JobFault("died", error.message)), false));
-    worker.once("exit", () => finish(() => next.reject(new JobFault("died", "the worker ended")), false));
+    worker.once("exit", died);
     worker.postMessage(next.job);
   };
 
