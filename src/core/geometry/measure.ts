@@ -50,6 +50,8 @@ export function createPairCache(slots: number): PairCache {
 /** mm: pruning keeps anything this close to the best, so that the order of the search cannot decide the answer. */
 const SLACK = 1e-9;
 
+/** mm: cores of grown pieces nearer than this are taken as touching. */
+const ALL_BUT_TOUCHING = 1e-8;
 /** mm: less travel than this is none. */
 const NO_TRAVEL = 1e-12;
 const TRAVEL = new Float64Array(6);
@@ -135,7 +137,8 @@ function measurePair(
   }
   const core = pairDistance(a, i, b, j, travel, enough);
   if (core === Infinity) return best;
-  if (core > 0) {
+  // Grown cores that all but touch have a depth, and a way out that two points so near each other cannot tell.
+  if (core > (ra + rb > 0 ? ALL_BUT_TOUCHING : 0)) {
     const distance = core - ra - rb;
     if (distance > best || (distance === best && out.pieceA >= 0 && !earlier(i, j, out))) return best;
     out.distance = distance;
@@ -175,10 +178,12 @@ function writeOverlapPoints(a: Body, b: Body, travel: Float64Array | null, out: 
     PARTED[3 + k] = (travel === null ? 0 : travel[3 + k]!) + step;
   }
   coreDistance(a, out.pieceA, b, out.pieceB, PARTED, Infinity);
+  // The two points are moved onto one line along the way out: the closest points are less exact than its direction.
   for (let k = 0; k < 3; k++) {
     const n = -DIRECTION[k]!;
-    out.pointA[k] = closestA[k]! + ra * n;
-    out.pointB[k] = closestB[k]! - way * n - rb * n;
+    const middle = (closestA[k]! + closestB[k]! + (ra - rb - way) * n) / 2;
+    out.pointA[k] = middle - (out.distance / 2) * n;
+    out.pointB[k] = middle + (out.distance / 2) * n;
   }
 }
 
