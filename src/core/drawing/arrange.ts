@@ -10,7 +10,7 @@ export interface Wanted {
   readonly views: readonly View[];
   readonly reach: Reach;
   /** Rows of datum names above the views. */
-  readonly nameRows: number;
+  readonly nameRows: (scale: number) => number;
   readonly ringRows: 1 | 2;
   /** Longest value that a dimension may show on each axis, as text. */
   readonly longest: Readonly<Record<Axis, string>>;
@@ -33,9 +33,10 @@ export interface Arrangement {
   /** Dimension lines: x below the lowest view, y right of the plan, z right of the side view, y below the rear view. */
   readonly lines: Readonly<Partial<Record<"x" | "yPlan" | "z" | "yRear", number>>>;
   readonly jog: number;
-  /** Free areas around the views. */
+  /** Free areas: right of the main views down to the rear view's title, right of the rear view, and where the area under everything begins. */
   readonly right: Rect | null;
-  readonly under: Rect;
+  readonly beside: Rect | null;
+  readonly under: number;
 }
 
 export const EDGE = 1.5; // air between a view's box and the rings' leaders' ends
@@ -66,7 +67,8 @@ export function arrange(wanted: Wanted, scale: number, area: Rect, hand: Hand): 
   if (right > area.right + 1e-6) return null;
 
   const placed: Placed[] = [];
-  const names = wanted.nameRows * nameRow(hand) + (wanted.nameRows > 0 ? 1.2 : 0);
+  const nameRows = wanted.nameRows(scale);
+  const names = nameRows * nameRow(hand) + (nameRows > 0 ? 1.2 : 0);
   let y = area.top;
   let namesBottom = y;
   if (has("plan")) {
@@ -105,6 +107,7 @@ export function arrange(wanted: Wanted, scale: number, area: Rect, hand: Hand): 
   return {
     scale, placed, names: { bottom: namesBottom, right: left + mainWidth + sideLabels }, lines, jog: JOG,
     right: widthOf(free) > 20 && heightOf(free) > 20 ? free : null,
-    under: { left: area.left, right: area.right, top: end + 2, bottom: area.bottom },
+    beside: has("rear") && main ? { left: right + 8, right: area.right, top: freeBottom + 3, bottom: area.bottom } : null,
+    under: end + 2,
   };
 }

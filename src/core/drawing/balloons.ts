@@ -120,6 +120,8 @@ function drawTag(pen: Pen, tag: Tag, at: Paper, radius: number, hand: Hand): voi
   const line = stroke(hand.pens.thin, tag.ink);
   if (tag.shape === "disc") pen.arc("balloons", at, radius, line, PAPER_WHITE, tag.of);
   else pen.polyline("balloons", [[at[0] - radius, at[1] - radius], [at[0] + radius, at[1] - radius], [at[0] + radius, at[1] + radius], [at[0] - radius, at[1] + radius]], true, line, PAPER_WHITE, tag.of);
-  const size = Math.min(hand.letters.table, (2 * radius - 0.5) / (0.6 * [...tag.text].length));
+  const half = 0.3 * [...tag.text].length;
+  // the text's corners stay inside the line
+  const size = Math.min(hand.letters.table, tag.shape === "disc" ? (radius - 0.25) / Math.hypot(half, 0.59) : (radius - 0.3) / half);
   pen.text("balloons", [at[0], at[1] + 0.365 * size], tag.text, size, { align: "centre", ink: tag.shape === "disc" ? INK : tag.ink, of: tag.of });
 }

@@ -9,6 +9,8 @@ export interface Facet {
   readonly high: number;
   /** How far the piece reaches toward the reader. */
   readonly near: number;
+  /** For each side three numbers: its outward normal, and the normal times any of its points. Empty for what is seen edge on. */
+  readonly sides: Float64Array;
 }
 
 export function facetOf(points: readonly Vec2[], near = 0): Facet {
@@ -19,7 +21,21 @@ export function facetOf(points: readonly Vec2[], near = 0): Facet {
     low = Math.min(low, b);
     high = Math.max(high, b);
   }
-  return { points, left, right, low, high, near };
+  const sides = new Float64Array(points.length < 3 ? 0 : 3 * points.length);
+  let count = 0;
+  for (let i = 0; i < points.length && points.length >= 3; i++) {
+    const p = points[i]!;
+    const q = points[i + 1 === points.length ? 0 : i + 1]!;
+    const edge = Math.hypot(q[0] - p[0], q[1] - p[1]);
+    if (!(edge > 1e-9)) continue;
+    // outward normal of an anticlockwise polygon
+    const nx = (q[1] - p[1]) / edge;
+    const ny = (p[0] - q[0]) / edge;
+    sides[count++] = nx;
+    sides[count++] = ny;
+    sides[count++] = nx * p[0] + ny * p[1];
+  }
+  return { points, left, right, low, high, near, sides: sides.subarray(0, count) };
 }
 
 export type Span = readonly [from: number, to: number];
@@ -29,34 +45,29 @@ export type Span = readonly [from: number, to: number];
  * `along` widens the polygon (mm) at edges that run with the segment, `across` at all others; negative narrows it.
  */
 export function spanInside(a: Vec2, b: Vec2, facet: Facet, along: number, across: number): Span | null {
-  const points = facet.points;
-  if (points.length < 3) return null;
+  const { sides } = facet;
+  if (sides.length === 0) return null;
   const dx = b[0] - a[0];
   const dy = b[1] - a[1];
-  const length = Math.hypot(dx, dy);
+  const length = Math.sqrt(dx * dx + dy * dy);
   if (!(length > 0)) return null;
   let from = 0;
   let to = 1;
-  for (let i = 0; i < points.length; i++) {
-    const p = points[i]!;
-    const q = points[i + 1 === points.length ? 0 : i + 1]!;
-    const ex = q[0] - p[0];
-    const ey = q[1] - p[1];
-    const edge = Math.hypot(ex, ey);
-    if (!(edge > 1e-9)) continue;
-    // outward normal of an anticlockwise polygon
-    const nx = ey / edge;
-    const ny = -ex / edge;
-    const same = (dx * ex + dy * ey) / (edge * length);
-    const outside = nx * (a[0] - p[0]) + ny * (a[1] - p[1]) - (same > 0.9995 ? along : across);
+  for (let i = 0; i < sides.length; i += 3) {
+    const nx = sides[i]!;
+    const ny = sides[i + 1]!;
+    // a side runs along (-ny, nx): with the segment where that has its direction
+    const same = dy * nx - dx * ny > 0.9995 * length;
+    const outside = nx * a[0] + ny * a[1] - sides[i + 2]! - (same ? along : across);
     const slope = nx * dx + ny * dy;
     if (Math.abs(slope) < 1e-12 * length) {
       if (outside > 0) return null;
       continue;
     }
     const t = -outside / slope;
-    if (slope > 0) to = Math.min(to, t);
-    else from = Math.max(from, t);
+    if (slope > 0) {
+      if (t < to) to = t;
+    } else if (t > from) from = t;
     if (from >= to) return null;
   }
   return [from, to];
@@ -102,7 +113,10 @@ export function outlineEdges(facets: readonly Facet[], slack: number): Edge[] {
       const a = facet.points[k]!;
       const b = facet.points[(k + 1) % n]!;
       const spans: Span[] = [];
+      const [left, right] = a[0] < b[0] ? [a[0], b[0]] : [b[0], a[0]];
+      const [low, high] = a[1] < b[1] ? [a[1], b[1]] : [b[1], a[1]];
       for (const { other, before } of rivals) {
+        if (other.left > right + slack || other.right < left - slack || other.low > high + slack || other.high < low - slack) continue;
         const span = spanInside(a, b, other, before ? slack : -slack, slack);
         if (span) spans.push(span);
       }
@@ -167,20 +181,14 @@ export function joinSegments(segments: readonly (readonly [Vec2, Vec2])[], slack
   return out;
 }
 
-/** Is a point inside one of the facets, narrowed by `slack`? */
-export function isInside(p: Vec2, facets: readonly Facet[], slack = 0): boolean {
-  return facets.some((facet) => p[0] >= facet.left && p[0] <= facet.right && p[1] >= facet.low && p[1] <= facet.high && facet.points.length >= 3 && depthInside(p, facet) >= slack);
-}
+/** Is a point inside a facet or on its edge? */
+export const isInside = (p: Vec2, facet: Facet): boolean =>
+  p[0] >= facet.left && p[0] <= facet.right && p[1] >= facet.low && p[1] <= facet.high && facet.sides.length > 0 && depthInside(p, facet) >= 0;
 
-/** How deep a point lies inside a convex polygon: least distance to its edges' lines, negative outside. */
+/** How deep a point lies inside a convex polygon: least distance to its sides' lines, negative outside. */
 export function depthInside(p: Vec2, facet: Facet): number {
   let depth = Infinity;
-  const points = facet.points;
-  for (let i = 0; i < points.length; i++) {
-    const a = points[i]!;
-    const b = points[i + 1 === points.length ? 0 : i + 1]!;
-    const edge = Math.hypot(b[0] - a[0], b[1] - a[1]);
-    if (edge > 1e-9) depth = Math.min(depth, ((b[0] - a[0]) * (p[1] - a[1]) - (b[1] - a[1]) * (p[0] - a[0])) / edge);
-  }
+  const { sides } = facet;
+  for (let i = 0; i < sides.length; i += 3) depth = Math.min(depth, sides[i + 2]! - sides[i]! * p[0] - sides[i + 1]! * p[1]);
   return depth;
 }

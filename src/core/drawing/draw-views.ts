@@ -102,6 +102,10 @@ function drawDatums(pen: Pen, arrangement: Arrangement, input: ViewsInput, scene
       if (cutting) {
         // thick ends of the plane, and which way one looks
         for (const [from, to] of [[top, top + 4], [foot - 4, foot]] as const) pen.line("section line", [label.x, from], [label.x, to], stroke(hand.pens.thick * 1.6));
+        for (const at of [top + 0.2, foot - 0.2]) {
+          pen.line("section line", [label.x, at], [label.x - 4.5, at], stroke(hand.pens.thin));
+          pen.polyline("section line", [[label.x - 4.5, at], [label.x - 2.5, at - 0.55], [label.x - 2.5, at + 0.55]], true, null, INK);
+        }
       }
       pen.text("datums", [label.x + LABEL_AIR, arrangement.names.bottom - label.row * nameRow(hand) - 0.25 * size], label.text, size, { ink: cutting ? INK : INDIGO, weight: cutting ? "bold" : "regular", of: label.datum.key });
     }
@@ -140,11 +144,13 @@ function ordinates(input: ViewsInput, axis: Axis, frame: ViewFrame, across: "acr
     return onPaper(frame, p)[across === "across" ? 0 : 1];
   };
   const out: Ordinate[] = [];
-  const add = (at: number, weight: number, start: number, of?: string, datum = false) => {
-    if (inReach(input, axis, at)) out.push({ at: along(at), text: placeText(at - zero, input.units), weight, start, ...(of ? { of } : {}), ...(datum ? { datum } : {}) });
+  const add = (at: number, weight: number, start: number, of?: string, datum = false, mark = "") => {
+    const text = placeText(at - zero, input.units);
+    if (inReach(input, axis, at)) out.push({ at: along(at), text: mark === "" ? text : `${text} ${mark}`, weight, start, ...(of ? { of } : {}), ...(datum ? { datum } : {}) });
   };
-  for (const datum of input.datums) if (datum.axis === axis) add(datum.at, 1e9, base, datum.key, true);
-  if (axis === "x" && input.station !== null) add(input.station, 1e9, base, "section");
+  // names of datums along x stand above the views; the others are told by their codes
+  for (const datum of input.datums) if (datum.axis === axis) add(datum.at, 1e9, base, datum.key, true, axis === "x" ? "" : datum.code);
+  if (axis === "x" && input.station !== null) add(input.station, 1e9, base, "section", false, "A");
   if (axis === "z") add(groundAt(input.layout.chassis, axis === "z" ? input.layout.chassis.wheelbase : 0), 1e8, base, "ground");
   const ends = input.items.filter((item) => item.is !== "tyre");
   const body = axis === "x" ? [...(input.layout.body.side ?? []), ...(input.layout.body.top ?? [])].map((p) => p[0]) : axis === "y" ? (input.layout.body.top ?? []).map((p) => p[1]) : (input.layout.body.side ?? []).map((p) => p[1]);

@@ -1,6 +1,6 @@
-import { CAUTIONS, drawCheckBar, drawLines } from "./furniture.ts";
+import { CAUTIONS, CHECK_BAR, drawCheckBar, drawLines } from "./furniture.ts";
 import { charactersIn, sheetText, textWidth, wrap } from "./lettering.ts";
-import { INDIGO, INK, PENCIL, type Hand, type Rect } from "./paper.ts";
+import { INDIGO, INK, PENCIL, VERDICT_INK, type Hand, type Rect } from "./paper.ts";
 import type { LineType } from "./plan.ts";
 import type { Pen } from "./pen.ts";
 import { stroke } from "./pen.ts";
@@ -12,50 +12,97 @@ interface Sample {
   readonly ink: string;
   readonly type: LineType;
   readonly fill?: string;
+  /** A numbered disc or square instead of a line. */
+  readonly tag?: "disc" | "square";
 }
 
-/** Foot of the sheet left of the title block: key of lines, remarks, cautions, check bar. */
-export function drawFoot(pen: Pen, area: Rect, remarks: readonly string[], hand: Hand, drawing = true): void {
+/**
+ * Foot of the sheet left of the title block, standing on its lower edge: key of lines, remarks, then the check bar with the cautions beside it (above it
+ * on narrow sheets). Returns its upper edge, never above the area: remarks that find no room are counted in the last line.
+ * @param datumNames what the codes beside dimensions mean
+ */
+export function drawFoot(pen: Pen, area: Rect, remarks: readonly string[], hand: Hand, drawing: { readonly datumNames: string } | null): number {
   const size = hand.letters.note;
   const width = area.right - area.left;
-  let y = area.top;
-  if (drawing) y = drawKey(pen, area, hand);
-  const barHeight = drawing ? size + 7.5 : 0;
-  const lines = (paragraphs: readonly string[]) => paragraphs.reduce((sum, p) => sum + wrap(p, charactersIn(width, size)).length, 0) * 1.4 * size;
-  y += 0.6 * size + size;
-  y = drawLines(pen, "cautions", [area.left, y], width, CAUTIONS, size, INK);
+  const pitch = 1.4 * size;
+  const linesIn = (paragraphs: readonly string[], room: number) => paragraphs.reduce((sum, p) => sum + wrap(p, charactersIn(room, size)).length, 0) * pitch;
+  const bar = drawing ? size + 6.5 : 0;
+  const beside = drawing !== null && width > CHECK_BAR + 8 + 60 * 0.6 * size;
+  const cautionsWidth = beside ? width - CHECK_BAR - 8 : width;
+  const cautions = linesIn(CAUTIONS, cautionsWidth);
+  const below = beside ? Math.max(bar, cautions) : bar + cautions + (drawing ? 0.6 * size : 0);
+  const keyRows = drawing ? keyLines(width, hand) : 0;
+  const about = drawing && drawing.datumNames !== "" ? [drawing.datumNames] : [];
+  const standing = below + keyRows * KEY_PITCH * size + linesIn(about, width) + 1.2 * size;
+
+  const room = area.bottom - area.top - standing;
+  const all = remarks.map(sheetText);
   const said: string[] = [];
-  for (const remark of remarks.map(sheetText)) {
-    if (y + lines([...said, remark]) > area.bottom - barHeight - size) break;
+  for (const remark of all) {
+    const last = said.length === all.length - 1;
+    if (linesIn([...said, remark], width) + (last ? 0 : pitch) > room) break;
     said.push(remark);
   }
-  if (said.length < remarks.length && said.length > 0) said[said.length - 1] = `${remarks.length - said.length + 1} more remarks are in the file that this was printed from.`;
-  drawLines(pen, "remarks", [area.left, y + 0.5 * size], width, said, size, PENCIL);
+  const unsaid = all.length - said.length;
+  if (unsaid > 0) said.push(`${unsaid} more ${unsaid === 1 ? "remark is" : "remarks are"} shown on the screen.`);
+  const top = area.bottom - standing - linesIn(said, width);
+  let y = top;
+  if (drawing) y = drawKey(pen, { ...area, top: y }, hand);
+  y = drawLines(pen, "key", [area.left, y + size], width, about, size, PENCIL);
+  drawLines(pen, "remarks", [area.left, y], width, said, size, INK);
+  const first = area.bottom - below + size;
+  drawLines(pen, "cautions", [beside ? area.left + CHECK_BAR + 8 : area.left, beside ? area.bottom - cautions + size : first], cautionsWidth, CAUTIONS, size, INK);
   if (drawing) drawCheckBar(pen, [area.left, area.bottom - 2.7], hand);
+  return top;
 }
 
-function drawKey(pen: Pen, area: Rect, hand: Hand): number {
+const KEY_PITCH = 1.7;
+const SAMPLE = 9;
+const AIR = 1.2;
+const BETWEEN = 4;
+const sampleOf = (one: Sample) => (one.tag ? 2.4 : SAMPLE);
+const keyWidth = (one: Sample, size: number) => sampleOf(one) + AIR + textWidth(one.name, size);
+function keyLines(width: number, hand: Hand): number {
+  let rows = 1;
+  let x = 0;
+  for (const one of samplesOf(hand)) {
+    const own = keyWidth(one, hand.letters.note);
+    if (x > 0 && x + own > width) {
+      rows++;
+      x = 0;
+    }
+    x += own + BETWEEN;
+  }
+  return rows;
+}
+
+function samplesOf(hand: Hand): Sample[] {
   const { thick, thin, hair } = hand.pens;
-  const samples: Sample[] = [
+  return [
     { name: "seen", width: thick, ink: INK, type: "continuous" }, { name: "hidden", width: hair, ink: PENCIL, type: "dashed" }, { name: "size estimated", width: thick, ink: INK, type: "dashed" },
     { name: "run", width: thin, ink: INK, type: "continuous", fill: RUN_FILL }, { name: "body line", width: thin, ink: INK, type: "continuous" }, { name: "datum", width: hair, ink: INDIGO, type: "chain" },
     { name: "wheel travel", width: hair, ink: PENCIL, type: "double-chain" }, { name: "luggage space", width: thin, ink: PENCIL, type: "dotted" },
+    { name: "number of a part, run R, shaft S", width: thin, ink: INK, type: "continuous", tag: "disc" }, { name: "number of a gap", width: thin, ink: VERDICT_INK.short, type: "continuous", tag: "square" },
   ];
+}
+
+function drawKey(pen: Pen, area: Rect, hand: Hand): number {
   const size = hand.letters.note;
-  const sample = 9;
-  const air = 1.2;
   let x = area.left;
-  let y = area.top + 0.5 * size;
-  for (const one of samples) {
-    const width = sample + air + textWidth(one.name, size);
+  let y = area.top + 0.85 * size;
+  for (const one of samplesOf(hand)) {
+    const width = keyWidth(one, size);
     if (x > area.left && x + width > area.right) {
       x = area.left;
-      y += 1.7 * size;
+      y += KEY_PITCH * size;
     }
-    if (one.fill) pen.box("key", { left: x, right: x + sample, top: y - 0.6, bottom: y + 0.6 }, stroke(one.width, one.ink), one.fill);
+    const sample = sampleOf(one);
+    if (one.tag === "disc") pen.arc("key", [x + 1.2, y], 1.2, stroke(one.width, one.ink));
+    else if (one.tag === "square") pen.box("key", { left: x, right: x + 2.4, top: y - 1.2, bottom: y + 1.2 }, stroke(one.width, one.ink));
+    else if (one.fill) pen.box("key", { left: x, right: x + sample, top: y - 0.6, bottom: y + 0.6 }, stroke(one.width, one.ink), one.fill);
     else pen.line("key", [x, y], [x + sample, y], stroke(one.width, one.ink, one.type));
-    pen.text("key", [x + sample + air, y + 0.365 * size], one.name, size, { ink: PENCIL });
-    x += width + 4;
+    pen.text("key", [x + sample + AIR, y + 0.365 * size], one.name, size, { ink: PENCIL });
+    x += width + BETWEEN;
   }
-  return y + 0.8 * size;
+  return y + 0.85 * size;
 }

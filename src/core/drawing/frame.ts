@@ -7,7 +7,7 @@ export const FIELD = 50;
 /** Width of the grid reference border, outside the frame. */
 export const GRID_BORDER = 5;
 /** How far a centring mark reaches into the drawing space. */
-export const CENTRING_REACH = 5;
+export const CENTRING_REACH = 4;
 
 /** Letters of the grid: I and O look like figures. */
 const LETTERS = "ABCDEFGHJKLMNPQRSTUVWXYZ";
@@ -26,7 +26,7 @@ export function fieldBorders(low: number, high: number, middle: number): number[
 }
 
 /** Frame, centring marks and grid reference of ISO 5457 (on A4 the grid stands at the top and the right only). */
-export function drawFrame(pen: Pen, paper: PaperName, hand: Hand): Rect {
+export function drawFrame(pen: Pen, paper: PaperName, hand: Hand, title: Rect): Rect {
   const [width, height] = PAPER_SIZES[paper];
   const frame = frameOf(paper);
   const thin = stroke(hand.pens.thin, PENCIL);
@@ -48,7 +48,8 @@ export function drawFrame(pen: Pen, paper: PaperName, hand: Hand): Rect {
   const mark = stroke(hand.pens.frame, INK);
   const [cx, cy] = [width / 2, height / 2];
   pen.line("frame", [cx, frame.top - GRID_BORDER], [cx, frame.top + CENTRING_REACH], mark);
-  pen.line("frame", [cx, frame.bottom + GRID_BORDER], [cx, frame.bottom - CENTRING_REACH], mark);
+  // on small sheets the title block stands over the middle
+  pen.line("frame", [cx, frame.bottom + GRID_BORDER], [cx, cx > title.left - 1 ? frame.bottom : frame.bottom - CENTRING_REACH], mark);
   pen.line("frame", [frame.left - GRID_BORDER, cy], [frame.left + CENTRING_REACH, cy], mark);
   pen.line("frame", [frame.right + GRID_BORDER, cy], [frame.right - CENTRING_REACH, cy], mark);
   return frame;

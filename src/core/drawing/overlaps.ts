@@ -39,13 +39,17 @@ export function findTextOutside(marks: readonly Mark[], area: Rect): string[] {
  */
 export function findTextOnLines(marks: readonly Mark[], slack = 0.05): { readonly text: string; readonly layer: string }[] {
   const out: { text: string; layer: string }[] = [];
+  const inked = marks.map((mark) => (mark.kind === "text" || !mark.stroke ? null : { reach: boundsOf(mark), segments: segmentsOf(mark) }));
   marks.forEach((mark, index) => {
     if (mark.kind !== "text") return;
     const whole = textBox(mark);
     const box = { left: whole.left + slack, right: whole.right - slack, top: whole.top + slack, bottom: whole.bottom - slack };
     marks.forEach((other, place) => {
-      if (other.kind === "text") return;
-      if (!segmentsOf(other).some(([a, b]) => meets(a, b, box, (other.stroke?.width ?? 0) / 2))) return;
+      const lines = inked[place];
+      if (other.kind === "text" || !lines) return;
+      const half = other.stroke!.width / 2;
+      if (depthOf({ left: lines.reach.left - half, right: lines.reach.right + half, top: lines.reach.top - half, bottom: lines.reach.bottom + half }, box) < 0) return;
+      if (!lines.segments.some(([a, b]) => meets(a, b, box, half))) return;
       const hidden = marks.slice(place + 1, index).some((cover) => covers(cover, whole));
       if (!hidden) out.push({ text: mark.text, layer: other.layer });
     });
@@ -54,6 +58,21 @@ export function findTextOnLines(marks: readonly Mark[], slack = 0.05): { readonl
 }
 
 type P = readonly [number, number];
+
+/** Box of a mark's line, without its width. */
+export function boundsOf(mark: Exclude<Mark, TextMark>): Rect {
+  if (mark.kind === "arc") return { left: mark.centre[0] - mark.radius, right: mark.centre[0] + mark.radius, top: mark.centre[1] - mark.radius, bottom: mark.centre[1] + mark.radius };
+  const points = mark.kind === "line" ? [mark.from, mark.to] : mark.points;
+  const box = { left: Infinity, right: -Infinity, top: Infinity, bottom: -Infinity };
+  for (const [x, y] of points) {
+    box.left = Math.min(box.left, x);
+    box.right = Math.max(box.right, x);
+    box.top = Math.min(box.top, y);
+    box.bottom = Math.max(box.bottom, y);
+  }
+  return box;
+}
+
 function segmentsOf(mark: Exclude<Mark, TextMark>): [P, P][] {
   if (!mark.stroke) return [];
   if (mark.kind === "line") return [[mark.from, mark.to]];

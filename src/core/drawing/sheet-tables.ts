@@ -49,10 +49,10 @@ export function sourceText(source: Source, units: SheetUnits): string {
   return axes.length === 0 ? how : `${how} ${axes.map((axis) => `${axis} ${amount(plusMinus[axis][0])}/+${amount(plusMinus[axis][1])}`).join(" ")}`;
 }
 
-/** The gap ledger, worst first; numbers are the ledger's. */
-export function gapsTable(layout: Layout, report: SheetReport, units: SheetUnits, only?: (gap: Gap) => boolean): Table {
+/** The gap ledger down to what is tight, worst first; numbers are the ledger's. */
+export function gapsTable(layout: Layout, report: SheetReport, units: SheetUnits): Table {
   const names = namesOf(layout);
-  const all = report.gaps.map((gap, index) => ({ gap, index })).filter(({ gap }) => !only || only(gap));
+  const all = report.gaps.map((gap, index) => ({ gap, index })).filter(({ gap }) => gap.verdict !== "clear");
   const rows = all.map(({ gap, index }): Row => ({
     of: `${gap.a}|${gap.b}`,
     cells: [
@@ -67,7 +67,27 @@ export function gapsTable(layout: Layout, report: SheetReport, units: SheetUnits
       { head: "no", least: longest(rows, 0, "no", 5), wanted: 0, align: "right" }, { head: "verdict", least: 7, wanted: 0 },
       { head: "between", least: 12, wanted: longest(rows, 2, "between", 30) }, { head: "and", least: 12, wanted: longest(rows, 3, "and", 30) },
       number("drawn", 4), number("worst", 5), number("need", 6), number("margin", 7),
-      { head: "because", least: 16, wanted: longest(rows, 8, "because", 60) },
+      { head: "because", least: 16, wanted: longest(rows, 8, "because", 110) },
+    ],
+  };
+}
+
+/** What is clear, shorter: numbers go on from the table above. */
+export function clearGapsTable(layout: Layout, report: SheetReport, units: SheetUnits): Table {
+  const names = namesOf(layout);
+  const rows = report.gaps.map((gap, index) => ({ gap, index })).filter(({ gap }) => gap.verdict === "clear").map(({ gap, index }): Row => ({
+    of: `${gap.a}|${gap.b}`,
+    cells: [
+      { text: String(index + 1), bold: true }, names.get(gap.a) ?? gap.a, names.get(gap.b) ?? gap.b, gapText(gap.distance, units), gapText(gap.worst, units), gapText(gap.required, units), gapText(gap.margin, units),
+      gap.provisional ? "estimated" : "",
+    ],
+  }));
+  const number = (head: string, column: number) => ({ head, least: longest(rows, column, head, 12), wanted: 0, align: "right" as const });
+  return {
+    title: "Gaps, clear", note: gapNote(units), rows,
+    columns: [
+      { head: "no", least: longest(rows, 0, "no", 5), wanted: 0, align: "right" }, { head: "between", least: 12, wanted: longest(rows, 1, "between", 30) }, { head: "and", least: 12, wanted: longest(rows, 2, "and", 30) },
+      number("drawn", 3), number("worst", 4), number("need", 5), number("margin", 6), { head: "size", least: 9, wanted: 0 },
     ],
   };
 }
@@ -110,8 +130,8 @@ export function runsTable(layout: Layout, units: SheetUnits): Table | null {
 export function figuresTable(layout: Layout, report: SheetReport, units: SheetUnits): Table | null {
   const rows: Row[] = [];
   const names = namesOf(layout);
-  const governs = (key: string | undefined) => (key === undefined ? "" : key === "body" ? "body line" : (names.get(key) ?? key));
-  const add = (what: string, value: string, by = "") => rows.push({ cells: [what, value, by] });
+  const governs = (key: string | undefined) => (key === undefined ? [] : [key === "body" ? "body line" : (names.get(key) ?? key)]);
+  const add = (what: string, value: string, by: readonly string[] = []) => rows.push({ cells: [[what, ...by].join(", "), value] });
   const { body, mass, spaces } = report;
   if (body) {
     const length = (mm: number | null) => (mm === null ? "not known" : placeText(mm, units));
@@ -120,29 +140,31 @@ export function figuresTable(layout: Layout, report: SheetReport, units: SheetUn
     add("length over all", length(body.length));
     add("front overhang", length(body.frontOverhang), governs(body.governs.frontOverhang));
     const limit = layout.body.overhangLimit;
-    const over = limit && body.rearOverhang !== null ? body.rearOverhang - limit.share * body.wheelbase : null;
-    const share = body.rearOverhangShare === null ? "" : `, ${(100 * body.rearOverhangShare).toFixed(1)} % of wheelbase`;
-    add("rear overhang", length(body.rearOverhang), `${governs(body.governs.rearOverhang)}${share}`);
-    if (limit) add("overhang limit", length(limit.share * body.wheelbase), `${(100 * limit.share).toFixed(0)} %${over === null ? "" : over > 1e-9 ? `: over by ${gapText(over, units)}` : `: ${gapText(-over, units)} left`}`);
+    const share = body.rearOverhangShare === null ? [] : [`${(100 * body.rearOverhangShare).toFixed(1)} % of wheelbase`];
+    add("rear overhang", length(body.rearOverhang), [...governs(body.governs.rearOverhang), ...share]);
+    if (limit) {
+      const over = body.rearOverhang === null ? null : body.rearOverhang - limit.share * body.wheelbase;
+      add(`its limit, ${Number((100 * limit.share).toFixed(1))} %`, length(limit.share * body.wheelbase), over === null ? [] : [over > 1e-9 ? `over by ${gapText(over, units)}` : `${gapText(-over, units)} left`]);
+    }
     add("approach angle", angle(body.approachAngle), governs(body.governs.approachAngle));
     add("departure angle", angle(body.departureAngle), governs(body.governs.departureAngle));
     add("breakover angle", angle(body.breakoverAngle), governs(body.governs.breakoverAngle));
     add("ground clearance", length(body.groundClearance), governs(body.governs.groundClearance));
   }
   if (mass) {
-    add("mass", `${mass.total.toFixed(1)} kg`, mass.missing.length === 0 ? "all parts weighed or given" : `${mass.missing.length} ${mass.missing.length === 1 ? "part" : "parts"} without a mass`);
+    add("mass, kg", mass.total.toFixed(1), mass.missing.length === 0 ? [] : [`${mass.missing.length} ${mass.missing.length === 1 ? "part" : "parts"} without one`]);
     if (mass.centre) {
-      add("front axle", `${mass.frontAxle.toFixed(1)} kg`);
-      add("rear axle", `${mass.rearAxle.toFixed(1)} kg`);
-      add("centre of mass", placeText(mass.centre[0], units), `x; y ${placeText(mass.centre[1], units)}; z ${placeText(mass.centre[2], units)}`);
+      add("on the front axle, kg", mass.frontAxle.toFixed(1));
+      add("on the rear axle, kg", mass.rearAxle.toFixed(1));
+      mass.centre.forEach((at, i) => add(`centre of mass, ${"xyz"[i]!} from the car's zero`, placeText(at, units)));
     }
   }
   const spaceNames = new Map(layout.spaces.map((space) => [space.key, space.name]));
-  for (const space of spaces ?? []) add("free litres", space.freeLitres.toFixed(1), `${spaceNames.get(space.key) ?? space.key}, of ${space.grossLitres.toFixed(1)}`);
+  for (const space of spaces ?? []) add(`${spaceNames.get(space.key) ?? space.key}, free litres of ${space.grossLitres.toFixed(1)}`, space.freeLitres.toFixed(1));
   if (rows.length === 0) return null;
   return {
     title: "Figures", note: `as drawn, at ride height; ${units === "mm" ? "mm" : "inches"}`, rows,
-    columns: [{ head: "what", least: 16, wanted: 0 }, { head: "value", least: longest(rows, 1, "value", 14), wanted: 0, align: "right" }, { head: "governed by", least: 16, wanted: longest(rows, 2, "governed by", 44) }],
+    columns: [{ head: "what, and what governs it", least: 20, wanted: longest(rows, 0, "what, and what governs it", 60) }, { head: "value", least: longest(rows, 1, "value", 14), wanted: 0, align: "right" }],
   };
 }
 

@@ -1,4 +1,4 @@
-import { groundAt, type View } from "../frames.ts";
+import { axisIndex, groundAt, type Axis, type View } from "../frames.ts";
 import type { Layout } from "../layout/schema.ts";
 import { arrange, type Arrangement, type Reach, type Wanted } from "./arrange.ts";
 import { balloonRadius } from "./balloons.ts";
@@ -8,12 +8,12 @@ import { drawFrame } from "./frame.ts";
 import { CHECK_BAR } from "./furniture.ts";
 import { drawFoot } from "./foot.ts";
 import { findTextOverlaps } from "./overlaps.ts";
-import { frameOf, HAND, inset, PAPER_SIZES, rect, STANDARD_SCALES, widthOf, type PaperName, type Rect } from "./paper.ts";
+import { frameOf, HAND, inset, type Hand, PAPER_SIZES, rect, STANDARD_SCALES, widthOf, type PaperName, type Rect } from "./paper.ts";
 import { createPen, type Pen } from "./pen.ts";
 import type { SheetPlan } from "./plan.ts";
-import { sheetDatums, zeroOf } from "./sheet-datums.ts";
+import { sheetDatums, stackLabels, zeroOf, type SheetDatum } from "./sheet-datums.ts";
 import { placeText, unitName, type SheetUnits } from "./sheet-lengths.ts";
-import { datumsTable, figuresTable, gapsTable, placesTable, runsTable, type SheetReport } from "./sheet-tables.ts";
+import { clearGapsTable, datumsTable, figuresTable, gapsTable, placesTable, runsTable, type SheetReport } from "./sheet-tables.ts";
 import { drawTable, headHeight, tableHeight, tableWidths, type Table } from "./table.ts";
 import { drawTitleBlock, titleArea, type TitleBlock } from "./title-block.ts";
 
@@ -55,7 +55,7 @@ export class SheetError extends Error {
 
 /** More sheets than these are not made: the rest is named in a remark. */
 export const MOST_SHEETS = 60;
-const MARGIN = 6;
+const MARGIN = 6.5;
 
 /** The first sheet of `planSheets`. */
 export function planSheet(layout: Layout, report: SheetReport, options: SheetOptions, info: SheetInfo = {}): SheetPlan {
@@ -83,23 +83,30 @@ export function planSheets(layout: Layout, report: SheetReport, options: SheetOp
   const title = titleArea(frame, hand, CHECK_BAR + 2 * MARGIN + 4);
   const content = inset(frame, MARGIN);
   const forViews = rect(content.left, content.top, content.right, title.top - 3);
-  const names = datums.filter((d) => d.axis === "x" && d.at >= reach.x[0] && d.at <= reach.x[1]).length + (station === null ? 0 : 1);
-  const longest = (axis: "x" | "y" | "z") => [...reach[axis], ...(axis === "x" ? [layout.chassis.wheelbase] : [])].map((v) => placeText(v - zero.at[axis === "x" ? 0 : axis === "y" ? 1 : 2], units === "in-fraction" ? "in-fraction" : units)).reduce((a, b) => (b.length > a.length ? b : a), units === "in-fraction" ? "-00 15/16" : "");
-  const wanted: Wanted = { views: ["plan", "side", "rear"], reach, nameRows: Math.min(4, Math.max(1, names)), ringRows: 1, longest: { x: longest("x"), y: longest("y"), z: longest("z") } };
+  const lines = datums.filter((d) => d.axis === "x" && d.at >= reach.x[0] && d.at <= reach.x[1]).map((datum) => ({ datum, at: datum.at }));
+  if (station !== null) lines.push({ datum: { key: "section", code: "A", name: "A", axis: "x", at: station }, at: station });
+  const longest = (axis: Axis): string => {
+    const said = [...reach[axis], ...datums.filter((d) => d.axis === axis).map((d) => d.at), ...(axis === "x" && station !== null ? [station] : [])].map((at) => placeText(at - zero.at[axisIndex(axis)], units).length);
+    // a fraction between the ends may be longer than theirs; codes of datums and the section's letter stand behind the value
+    const value = Math.max(...said, ...(units === "in-fraction" ? reach[axis].map((at) => placeText(Math.trunc((at - zero.at[axisIndex(axis)]) / 25.4) * 25.4, units).length + 6) : []));
+    return "0".repeat(value + (axis === "x" ? (station === null ? 0 : 2) : 1 + datums.at(-1)!.code.length));
+  };
+  const wanted: Wanted = { views: ["plan", "side", "rear"], reach, nameRows: (scale) => nameRowsOf(lines, scale, hand), ringRows: 1, longest: { x: longest("x"), y: longest("y"), z: longest("z") } };
   const { scale, groups } = groupViews(wanted, options.scale, forViews, items, paper);
 
-  const tables = [placesTable(layout, items, zero, units), gapsTable(layout, report, units), figuresTable(layout, report, units), runsTable(layout, units), datumsTable(datums, zero, units)].filter((t): t is Table => t !== null && t.rows.length > 0);
+  const tables = [placesTable(layout, items, zero, units), gapsTable(layout, report, units), figuresTable(layout, report, units), runsTable(layout, units), datumsTable(datums, zero, units), clearGapsTable(layout, report, units)].filter((t): t is Table => t !== null && t.rows.length > 0);
   const input: ViewsInput = { layout, items, gaps: report.gaps, datums, zero, units, station, reach };
   const pages: { pen: Pen; remarks: string[]; drawing: boolean }[] = [];
   const flow = startFlow(tables);
   groups.forEach((arrangement, index) => {
     const pen = createPen();
-    drawFrame(pen, paper, hand);
+    drawFrame(pen, paper, hand, title);
     const own = drawViews(pen, arrangement, input, hand);
     if (index === 0) own.unshift(...remarks);
-    const foot = rect(content.left, title.top, title.left - 4, content.bottom);
-    drawFoot(pen, foot, own, hand);
-    fillDrawing(pen, flow, arrangement, title, content);
+    const foot = rect(content.left, Math.min(title.top, arrangement.under), title.left - 4, content.bottom);
+    const codes = datums.filter((d) => d.axis !== "x" && d.at >= reach[d.axis][0] && d.at <= reach[d.axis][1]).map((d) => `${d.code} ${d.name}`);
+    const footTop = drawFoot(pen, foot, own, hand, { datumNames: codes.length === 0 ? "" : `Datums: ${codes.join(", ")}.` });
+    fillDrawing(pen, flow, arrangement, title, content, footTop);
     pages.push({ pen, remarks: own, drawing: true });
   });
   while (flow.some((entry) => entry.done < entry.table.rows.length)) {
@@ -108,9 +115,12 @@ export function planSheets(layout: Layout, report: SheetReport, options: SheetOp
       break;
     }
     const pen = createPen();
-    drawFrame(pen, paper, hand);
-    fillColumns(pen, flow, rect(content.left, content.top, content.right, title.top - 4));
-    drawFoot(pen, rect(content.left, title.top, title.left - 4, content.bottom), [], hand, false);
+    drawFrame(pen, paper, hand, title);
+    drawFoot(pen, rect(content.left, title.top, title.left - 4, content.bottom), [], hand, null);
+    const boxes = [rect(content.left, content.top, content.right, title.top - 4)];
+    const before = rowsLeft(flow);
+    for (const entry of flow) if (entry.done < entry.table.rows.length) placeInBoxes(pen, entry, boxes);
+    if (rowsLeft(flow) === before) throw new Error("a table found no room on an empty sheet");
     pages.push({ pen, remarks: [], drawing: false });
   }
   const notMeasured = layout.parts.filter((part) => part.source.how !== "measured").length;
@@ -125,12 +135,16 @@ export function planSheets(layout: Layout, report: SheetReport, options: SheetOp
     return { paper: { name: paper, width: PAPER_SIZES[paper][0], height: PAPER_SIZES[paper][1] }, title: `${layout.name}, ${block.title.toLowerCase()}`, scale, sheet: index + 1, sheets: pages.length, marks: page.pen.marks, remarks: [...page.remarks, ...cut] };
   });
 
-  function fillDrawing(pen: Pen, entries: Entry[], arrangement: Arrangement, block: Rect, area: Rect): void {
+  function fillDrawing(pen: Pen, entries: Entry[], arrangement: Arrangement, block: Rect, area: Rect, footTop: number): void {
     const boxes: Rect[] = [];
     if (arrangement.right) boxes.push(arrangement.right);
-    // beside the title block the foot is taken, above it the sheet is free
-    const under = rect(arrangement.under.left, arrangement.under.top, area.right, block.top - 4);
-    if (under.bottom - under.top > headHeight(hand) + 12) boxes.push(under);
+    if (arrangement.beside) boxes.push(arrangement.beside);
+    // beside the title block down to the foot, or above both over the whole width: whichever is larger
+    const left = rect(area.left, arrangement.under, block.left - 4, footTop - 4);
+    const whole = rect(area.left, arrangement.under, arrangement.beside ? arrangement.beside.left - 8 : area.right, Math.min(block.top, footTop) - 4);
+    const room = (r: Rect) => Math.max(0, r.bottom - r.top - headHeight(hand)) * widthOf(r);
+    const under = room(left) > room(whole) ? left : whole;
+    if (under.bottom - under.top > headHeight(hand) + 8) boxes.push(under);
     for (const entry of entries) {
       if (entry.done >= entry.table.rows.length) continue;
       placeInBoxes(pen, entry, boxes);
@@ -143,45 +157,16 @@ export function planSheets(layout: Layout, report: SheetReport, options: SheetOp
     const fitting = boxes.map((box, i) => ({ box, i, width: Math.min(widthOf(box), widths.wanted) })).filter(({ box }) => widthOf(box) >= widths.least);
     const whole = fitting.find(({ box, width }) => tableHeight(rest, width, hand) <= box.bottom - box.top);
     // a table is begun on a drawing only where a good part of it fits
-    const part = fitting.filter(({ box, width }) => tableHeight(rest, width, hand, 5) <= box.bottom - box.top).sort((a, b) => b.box.bottom - b.box.top - (a.box.bottom - a.box.top))[0];
+    const part = fitting.filter(({ box, width }) => tableHeight(rest, width, hand, 3) <= box.bottom - box.top).sort((a, b) => b.box.bottom - b.box.top - (a.box.bottom - a.box.top))[0];
     const chosen = whole ?? part;
     if (!chosen) return;
     const { box, i, width } = chosen;
     const drawn = drawTable(pen, rect(box.left, box.top, box.left + width, box.bottom), rest, hand, entry.done > 0);
     entry.done += drawn.rows;
     const beside = rect(box.left + width + 8, box.top, box.right, box.bottom);
-    const below = rect(box.left, drawn.bottom + 5, box.left + width, box.bottom);
+    const below = rect(box.left, drawn.bottom + 6, box.left + width, box.bottom);
     boxes.splice(i, 1, below, ...(widthOf(beside) > 30 ? [beside] : []));
-    if (entry.done < entry.table.rows.length && widthOf(beside) > widths.least) placeInBoxes(pen, entry, boxes);
-  }
-
-  function fillColumns(pen: Pen, entries: Entry[], area: Rect): void {
-    let left = area.left;
-    let top = area.top;
-    let columnRight = area.left;
-    for (const entry of entries) {
-      while (entry.done < entry.table.rows.length) {
-        const widths = tableWidths(entry.table, hand.letters.table);
-        const width = Math.min(widths.wanted, widthOf(area));
-        const rest = restOf(entry);
-        const room = rect(left, top, left + width, area.bottom);
-        const drawn = room.right > area.right + 1e-6 ? { rows: 0, bottom: top } : drawTable(pen, room, rest, hand, entry.done > 0);
-        if (drawn.rows > 0) {
-          entry.done += drawn.rows;
-          columnRight = Math.max(columnRight, left + width);
-          top = drawn.bottom + 6;
-        }
-        if (entry.done < entry.table.rows.length) {
-          // next column, or next sheet
-          if (top === area.top && drawn.rows === 0 && left === area.left) return;
-          left = columnRight + 10;
-          top = area.top;
-          if (left + Math.min(widths.least, widthOf(area)) > area.right + 1e-6) return;
-          columnRight = left;
-          if (left + width > area.right + 1e-6) return;
-        }
-      }
-    }
+    if (entry.done < entry.table.rows.length) placeInBoxes(pen, entry, boxes);
   }
 }
 
@@ -189,6 +174,7 @@ interface Entry {
   readonly table: Table;
   done: number;
 }
+const rowsLeft = (entries: readonly Entry[]): number => entries.reduce((sum, entry) => sum + entry.table.rows.length - entry.done, 0);
 const startFlow = (tables: readonly Table[]): Entry[] => tables.map((table) => ({ table, done: 0 }));
 const restOf = (entry: Entry): Table => ({ ...entry.table, rows: entry.table.rows.slice(entry.done) });
 
@@ -230,6 +216,13 @@ function reachOf(layout: Layout, items: readonly DrawnItem[], station: number | 
   take(1, 0);
   take(2, 0);
   return { x: [low[0]!, high[0]!], y: [low[1]!, high[1]!], z: [low[2]!, high[2]!] };
+}
+
+/** Most rows of datum names above a view. */
+const MOST_NAME_ROWS = 5;
+function nameRowsOf(lines: readonly { readonly datum: SheetDatum; readonly at: number }[], scale: number, hand: Hand): number {
+  const { labels } = stackLabels(lines.map(({ datum, at }) => ({ datum, x: at / scale })), hand.letters.dimension, Infinity, MOST_NAME_ROWS);
+  return labels.reduce((most, label) => Math.max(most, label.row + 1), 0);
 }
 
 /** Scale and sheets of views: all on one at the scale asked for or the largest that fits; else each on its own sheet; else SheetError. */

@@ -37,13 +37,19 @@ export function tableWidths(table: Table, size: number): { least: number; wanted
   return { least: sum((c) => c.least), wanted: sum((c) => Math.max(c.wanted, c.least)) };
 }
 
-/** Characters for each column in a width: the least, then what is left shared out in proportion to what each still wants. */
+/** Characters for each column in a width: the least, then what is left, those that want little first, so that only the widest wrap. */
 function fitColumns(table: Table, width: number, size: number): number[] {
   const least = table.columns.reduce((sum, c) => sum + c.least, 0);
   const spare = charactersIn(width, size) - least - GAP * (table.columns.length - 1);
   const wants = table.columns.map((c) => Math.max(0, c.wanted - c.least));
-  const all = wants.reduce((a, b) => a + b, 0);
-  return table.columns.map((c, i) => c.least + (all === 0 || spare <= 0 ? 0 : Math.min(wants[i]!, Math.floor((spare * wants[i]!) / all))));
+  const given = wants.map(() => 0);
+  const order = wants.map((_, i) => i).filter((i) => wants[i]! > 0).sort((a, b) => wants[a]! - wants[b]!);
+  let rest = Math.max(0, spare);
+  order.forEach((i, place) => {
+    given[i] = Math.min(wants[i]!, Math.floor(rest / (order.length - place)));
+    rest -= given[i]!;
+  });
+  return table.columns.map((c, i) => c.least + given[i]!);
 }
 
 interface SetRow {

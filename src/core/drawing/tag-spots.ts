@@ -47,7 +47,7 @@ export function spotsOf(look: Look, all: readonly Look[], frame: ViewFrame): Spo
       }
     }
     if (depth < -1e-6) continue;
-    const seen = !nearer.some((other) => isInside(place, other.facets.filter((facet) => facet.near > near)));
+    const seen = !nearer.some((other) => place[0] > other.box.left && place[0] < other.box.right && place[1] > other.box.low && place[1] < other.box.high && other.facets.some((facet) => facet.near > near && isInside(place, facet)));
     spots.push({ at: onPaper(frame, place), depth: depth / frame.scale, seen });
   }
   spots.sort((a, b) => Number(b.seen) - Number(a.seen) || b.depth - a.depth);

@@ -35,7 +35,7 @@ interface Cell {
 
 /** ISO 7200: at most 180 mm wide, in the lower right corner of the frame. */
 export const TITLE_WIDTH = 180;
-export const titleRowHeight = (hand: Hand): number => Math.max(8, hand.letters.table * 3.1);
+export const titleRowHeight = (hand: Hand): number => Math.max(7.8, hand.letters.table * 3.2);
 export const titleHeight = (hand: Hand): number => 5 * titleRowHeight(hand);
 
 /** Area of the title block: narrower than 180 mm only where the check bar would otherwise find no room beside it. */
@@ -56,8 +56,8 @@ export function drawTitleBlock(pen: Pen, area: Rect, block: TitleBlock, hand: Ha
   ];
   const height = (area.bottom - area.top) / rows.length;
   const thin = stroke(hand.pens.thin, PENCIL);
-  const label = Math.min(1.9, hand.letters.note * 0.86);
-  const pad = 1.2;
+  const label = Math.min(2.2, height * 0.215);
+  const pad = 1.4;
   rows.forEach((row, r) => {
     const top = area.top + r * height;
     if (r > 0) pen.line("title block", [area.left, top], [area.right, top], thin);
@@ -68,10 +68,10 @@ export function drawTitleBlock(pen: Pen, area: Rect, block: TitleBlock, hand: Ha
       const size = cell.big ? hand.letters.title : hand.letters.dimension;
       const room = right - left - 2 * pad - (cell.symbol ? height * 2.6 : 0);
       const name = fitText(cell.label, right - left - 2 * pad, label, 1);
-      pen.text("title block", [left + pad, top + 0.9 + 0.78 * label], name.text, name.size, { ink: PENCIL });
-      const value = fitText(sheetText(cell.value), room, Math.min(size, height * 0.5), 1.75);
+      pen.text("title block", [left + pad, top + 0.13 * height + 0.73 * label], name.text, name.size, { ink: PENCIL });
+      const value = fitText(sheetText(cell.value), room, Math.min(size, height * (cell.big ? 0.5 : 0.38)), 1.75);
       if (value.cut) remarks.push(`The ${cell.label} is too long for the title block and was cut: ${cell.value}`);
-      pen.text("title block", [left + pad, top + height - 0.24 * height], value.text, value.size, { weight: cell.big ? "bold" : "regular" });
+      pen.text("title block", [left + pad, top + 0.83 * height], value.text, value.size, { weight: cell.big ? "bold" : "regular" });
       if (cell.symbol) drawProjectionSymbol(pen, rect(right - height * 2.6, top + 0.8, right - pad, top + height - 0.8), hand);
       left = right;
     });

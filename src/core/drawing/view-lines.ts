@@ -33,12 +33,13 @@ export function drawLooks(pen: Pen, frame: ViewFrame, looks: readonly Look[], ha
   }
   const covers = looks.filter(hides).flatMap((look) => look.facets.map((facet) => ({ facet, look })));
   const shown: { look: Look; clear: Vec2[][]; covered: Vec2[][] }[] = looks.map((look) => {
+    const around = covers.filter(({ facet, look: other }) => other !== look && facet.left < look.box.right && facet.right > look.box.left && facet.low < look.box.high && facet.high > look.box.low);
+    const overOf = new Map<number, Facet[]>();
+    for (const { near } of look.facets) if (!overOf.has(near)) overOf.set(near, around.filter(({ facet }) => facet.near > near + 1e-6).map(({ facet }) => facet));
     const clear: [Vec2, Vec2][] = [];
     const covered: [Vec2, Vec2][] = [];
     for (const edge of look.edges) {
-      const over: Facet[] = [];
-      for (const cover of covers) if (cover.look !== look && cover.facet.near > edge.facet.near + 1e-6) over.push(cover.facet);
-      const parts = partEdge(edge, over, slack);
+      const parts = partEdge(edge, overOf.get(edge.facet.near)!, slack);
       clear.push(...parts.clear);
       covered.push(...parts.covered);
     }
