@@ -28,10 +28,14 @@ export default defineConfig(({ isSsrBuild }) => ({
     : { outDir: "dist/client", sourcemap: false, target: "es2022" },
   server: { host: "127.0.0.1" },
   test: {
-    include: ["tests/**/*.test.ts", "tests/**/*.test.tsx"],
     testTimeout: 30_000,
     hookTimeout: 60_000,
     pool: "forks",
     maxWorkers: 2,
+    projects: [
+      { extends: true, test: { name: "core", include: ["tests/**/*.test.ts", "tests/**/*.test.tsx"], exclude: ["tests/server/**", "tests/journeys/**"] } },
+      // what needs PostgreSQL: the cluster is started before the first of these and never for the others
+      { extends: true, test: { name: "service", include: ["tests/server/**/*.test.ts", "tests/journeys/**/*.test.ts"], globalSetup: ["tests/support/cluster.setup.ts"] } },
+    ],
   },
 }));

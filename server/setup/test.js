@@ -1,9 +1,10 @@
 // `npm test`: all set-up, then types, lint, both builds and every test; ends with "N passed, N failed". Node's own modules only.
-import { spawnSync } from "node:child_process";
+// `npm test -- tests/core/geometry` runs the tests of some files after the same set-up.
+import { spawn, spawnSync } from "node:child_process";
 import { existsSync, mkdirSync, readFileSync, rmSync } from "node:fs";
 import { join } from "node:path";
 import { buildClient, buildServer } from "./build.js";
-import { postgresBin, startCluster } from "./cluster.js";
+import { postgresBin } from "./cluster.js";
 import { installModules, requireNode, requirePackages, ROOT } from "./install.js";
 import { say } from "./say.js";
 
@@ -15,37 +16,47 @@ requirePackages([
 ]);
 installModules();
 
-let failedSteps = 0;
-/** @param {string} what @param {string} script @param {string[]} args */
-const step = (what, script, args) => {
-  say(`${what} …`);
-  const result = spawnSync(process.execPath, [join(ROOT, "node_modules", script), ...args], { cwd: ROOT, stdio: ["ignore", 2, 2] });
-  if (result.status !== 0) {
-    failedSteps++;
-    say(`FAILED: ${what}`);
-  }
-};
-step("Types", "typescript/bin/tsc", ["-b"]);
-step("Lint", "eslint/bin/eslint.js", ["-c", ".eslint.config.js", "."]);
-buildServer();
-buildClient();
+/** Steps before the tests that failed, by name. @type {string[]} */
+const failedSteps = [];
+const module = (/** @type {string} */ path) => join(ROOT, "node_modules", path);
+/**
+ * Runs a step beside others; what it says is shown when it has ended.
+ * @param {string} name @param {string} script @param {string[]} args @returns {Promise<void>}
+ */
+const step = (name, script, args) => new Promise((resolve) => {
+  const child = spawn(process.execPath, [module(script), ...args], { cwd: ROOT, stdio: ["ignore", "pipe", "pipe"] });
+  /** @type {Buffer[]} */
+  const said = [];
+  child.stdout.on("data", (chunk) => said.push(chunk));
+  child.stderr.on("data", (chunk) => said.push(chunk));
+  child.on("close", (code) => {
+    process.stderr.write(Buffer.concat(said));
+    say(code === 0 ? `${name}: right` : `${name}: FAILED`);
+    if (code !== 0) failedSteps.push(name);
+    resolve();
+  });
+});
 
-const cluster = await startCluster({ name: `test-${process.pid}`, durable: false });
+say("Types and lint …");
+await Promise.all([step("types", "typescript/bin/tsc", ["-b"]), step("lint", "eslint/bin/eslint.js", ["-c", ".eslint.config.js", "."])]);
+for (const [name, build] of /** @type {const} */ ([["server build", buildServer], ["client build", buildClient]])) {
+  if (!build({ orEnd: false })) failedSteps.push(name);
+}
+
 const results = join(ROOT, ".artifacts", "vitest.json");
 mkdirSync(join(ROOT, ".artifacts"), { recursive: true });
 rmSync(results, { force: true });
-const only = process.argv.slice(2);
-const vitest = spawnSync(process.execPath, [join(ROOT, "node_modules/vitest/vitest.mjs"), "run", "--reporter=default", "--reporter=json", `--outputFile.json=${results}`, ...only], {
-  cwd: ROOT, stdio: ["ignore", 2, 2], env: { ...process.env, TEST_CLUSTER_URL: cluster.ownerUrl, NODE_ENV: "test" },
+const vitest = spawnSync(process.execPath, [module("vitest/vitest.mjs"), "run", "--reporter=default", "--reporter=json", `--outputFile.json=${results}`, ...process.argv.slice(2)], {
+  cwd: ROOT, stdio: ["ignore", 2, 2], env: { ...process.env, NODE_ENV: "test" },
 });
-cluster.stop();
-rmSync(cluster.folder, { recursive: true, force: true });
 
-const report = existsSync(results) ? JSON.parse(readFileSync(results, "utf8")) : { numPassedTests: 0, numFailedTests: 0 };
+/** @type {{ numPassedTests: number, numFailedTests: number, testResults: { status: string, assertionResults: unknown[] }[] }} */
+const report = existsSync(results) ? JSON.parse(readFileSync(results, "utf8")) : { numPassedTests: 0, numFailedTests: 0, testResults: [] };
 const passed = report.numPassedTests;
-// a file that could not run, or a step before the tests, counts as a failure of its own
-let failed = report.numFailedTests + failedSteps;
-if (vitest.status !== 0 && failed === 0) failed = 1;
-if (passed === 0 && failed === 0) failed = 1;
+// a file that could not even begin has no tests that failed: it counts as one; so does each step before the tests
+const brokenFiles = report.testResults.filter((file) => file.status === "failed" && file.assertionResults.length === 0).length;
+let failed = report.numFailedTests + brokenFiles + failedSteps.length;
+if (failed === 0 && (vitest.status !== 0 || passed === 0)) failed = 1;
+if (failedSteps.length > 0) say(`Failed before the tests: ${failedSteps.join(", ")}`);
 process.stdout.write(`${passed} passed, ${failed} failed\n`);
-process.exit(failed === 0 ? 0 : 1);
+process.exitCode = failed === 0 ? 0 : 1;
