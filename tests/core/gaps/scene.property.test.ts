@@ -35,7 +35,7 @@ const command: fc.Arbitrary<Command> = fc.oneof(
   fc.record({ kind: fc.constant("move" as const), items: fc.uniqueArray(partKey, { minLength: 1, maxLength: 3 }).map((keys) => keys.map((key) => ({ list: "parts" as const, key }))), by: fc.tuple(coordinate, coordinate, coordinate) }),
   fc.record({ kind: fc.constant("place" as const), key: partKey, at: fc.tuple(fc.integer({ min: 1200, max: 3000 }), coordinate, fc.integer({ min: 100, max: 700 })), turn: fc.tuple(coordinate, fc.integer({ min: -80, max: 80 }), coordinate) }),
   fc.record({ kind: fc.constant("move-node" as const), run: fc.constantFrom("loom", "pipe"), node: fc.constantFrom("a", "b", "c", "d"), at: fc.tuple(fc.integer({ min: 1400, max: 2800 }), coordinate, fc.integer({ min: 100, max: 700 })) }),
-  fc.record({ kind: fc.constant("move" as const), items: fc.constant([{ list: "runs" as const, key: "pipe" }]), by: fc.tuple(coordinate, coordinate, coordinate) }),
+  fc.record({ kind: fc.constant("move" as const), items: fc.constant<{ list: "runs"; key: string }[]>([{ list: "runs", key: "pipe" }]), by: fc.tuple(coordinate, coordinate, coordinate) }),
   fc.constantFrom<Command>(
     { kind: "add", list: "parts", item: partSchema.parse({ key: "extra", name: "Extra", kind: "other", solids: [{ type: "box", size: [90, 80, 70] }], at: [2500, 0, 500], carriedBy: "engine" }) },
     { kind: "remove", list: "parts", key: "extra" },
