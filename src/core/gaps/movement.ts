@@ -49,12 +49,11 @@ export function outboardChain(shaft: { readonly key: string; readonly inboard: r
   return [{ key: `${shaft.key}/arm`, movement: { x: [0, 0], y, z: [0, 0] }, notCovered: [] }, ...chain];
 }
 
-/** How many links of `chain` come before the first one that `other` shares. */
-function ownLinks(chain: Chain, other: Chain): number {
-  for (let i = 0; i < chain.length; i++) {
-    for (let j = 0; j < other.length; j++) if (chain[i]!.key === other[j]!.key) return i;
-  }
-  return chain.length;
+/** How many links two chains share: in a tree, all from the first shared carrier to the root. */
+function sharedLinks(a: Chain, b: Chain): number {
+  let n = 0;
+  while (n < a.length && n < b.length && a[a.length - 1 - n]!.key === b[b.length - 1 - n]!.key) n++;
+  return n;
 }
 
 export interface RelativeMovement {
@@ -73,19 +72,20 @@ const SAME: RelativeMovement = { travel: { low: [0, 0, 0], high: [0, 0, 0] }, st
  * @example an engine that moves +-8 across carries a pump: pump and engine move against each other only by the pump's own movement
  */
 export function relativeMovement(a: Chain, b: Chain): RelativeMovement {
-  const fromA = ownLinks(a, b);
-  const fromB = ownLinks(b, a);
-  if (fromA === 0 && fromB === 0) return SAME;
+  const shared = sharedLinks(a, b);
+  const ownA = a.length - shared;
+  const ownB = b.length - shared;
+  if (ownA === 0 && ownB === 0) return SAME;
   let [lx, ly, lz, hx, hy, hz] = [0, 0, 0, 0, 0, 0];
   let words: Set<string> | null = null;
-  for (let i = 0; i < fromB; i++) {
+  for (let i = 0; i < ownB; i++) {
     const { movement, notCovered } = b[i]!;
     lx += movement.x[0]; hx += movement.x[1];
     ly += movement.y[0]; hy += movement.y[1];
     lz += movement.z[0]; hz += movement.z[1];
     for (const word of notCovered) (words ??= new Set()).add(word);
   }
-  for (let i = 0; i < fromA; i++) {
+  for (let i = 0; i < ownA; i++) {
     const { movement, notCovered } = a[i]!;
     lx -= movement.x[1]; hx -= movement.x[0];
     ly -= movement.y[1]; hy -= movement.y[0];
