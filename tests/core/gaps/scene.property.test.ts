@@ -8,6 +8,7 @@ import { exportLayout } from "../../../src/core/layout/export-layout.ts";
 import { findFaults } from "../../../src/core/layout/invariants.ts";
 import { parseLayout } from "../../../src/core/layout/parse-layout.ts";
 import { layoutSchema, partSchema, type Layout } from "../../../src/core/layout/schema.ts";
+import { randomLayout } from "./random-layout.ts";
 
 const SEED = 20261201;
 const tyre = { diameter: 640, width: 200, loadedRadius: 305 };
@@ -67,6 +68,31 @@ describe("a scene", () => {
       }
     }), { seed: SEED, numRuns: 60 });
   });
+
+  it(`updated equals one built anew, to the bit, also where items become quite other ones, come, go and change places (seed ${SEED})`, () => {
+    fc.assert(fc.property(fc.integer({ min: 1, max: 1e6 }), fc.array(fc.tuple(fc.nat(5), fc.nat(1e6), fc.nat(20)), { minLength: 1, maxLength: 8 }), (seed, steps) => {
+      let layout = randomLayout(seed);
+      const scene = buildScene(layout);
+      for (const [what, otherSeed, index] of steps) {
+        const other = randomLayout(otherSeed);
+        const part = other.parts[index % other.parts.length]!;
+        const run = other.runs[index % 2]!;
+        const commands: Command[] = [
+          { kind: layout.parts.some((one) => one.key === part.key) ? "replace" : "add", list: "parts", item: part },
+          { kind: "replace", list: "runs", item: run },
+          { kind: "remove", list: "parts", key: layout.parts[index % layout.parts.length]!.key },
+          { kind: "reorder", list: "parts", key: layout.parts[index % layout.parts.length]!.key, position: otherSeed % layout.parts.length },
+          { kind: "set", which: "rules", value: other.rules },
+          { kind: "set", which: "contacts", value: [{ between: ["r0", layout.parts[index % layout.parts.length]!.key], why: "clip" }] },
+        ];
+        const applied = applyCommand(layout, commands[what]!);
+        if (!applied.ok) continue;
+        layout = applied.layout;
+        updateScene(scene, layout, applied.diff);
+        expect(JSON.stringify(scene.report)).toBe(JSON.stringify(checkGaps(layout)));
+      }
+    }), { seed: SEED, numRuns: 40 });
+  }, 120_000);
 
   it(`gives finite numbers, margins in order and verdicts that follow from them (seed ${SEED})`, () => {
     fc.assert(fc.property(fc.array(command, { minLength: 1, maxLength: 8 }), (commands) => {
