@@ -18,7 +18,7 @@ const place = (pose: Pose, p: Vec3): V => {
   ];
 };
 
-export function solidOf(module: ManifoldToplevel, pieces: readonly Piece[], pose: Pose, segments = 32): Manifold {
+export function solidOf(module: ManifoldToplevel, pieces: readonly Piece[], pose: Pose, segments = 48): Manifold {
   const { Manifold } = module;
   const solids = pieces.map((piece) => {
     const points: V[] = piece.points.map((p) => place(pose, p));
