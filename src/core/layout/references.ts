@@ -1,4 +1,4 @@
-import type { ItemChange, ListName } from "./commands.ts";
+import { LISTS, type ItemChange, type ListName } from "./commands.ts";
 import { itemOf } from "./diff.ts";
 import type { Layout, Part, Run } from "./schema.ts";
 
@@ -33,6 +33,8 @@ export function renameReferences(layout: Layout, list: ListName, from: string, t
   const before = itemOf(layout, list, from);
   if (!before) return `There is no "${from}" in ${list} any more.`;
   if (from === to) return [];
+  const taken = LISTS.some((name) => layout[name].some((item) => item.key === to)) || layout.chassis.datums.some((datum) => datum.key === to);
+  if (taken) return `There is already something with the key "${to}".`;
   const position = layout[list].findIndex((item) => item.key === from);
   const changes: ItemChange[] = [
     { list, key: from, before, after: null, positionBefore: position, positionAfter: null },
