@@ -12,6 +12,8 @@ export interface Wanted {
   /** Rows of datum names above the views. */
   readonly nameRows: (scale: number) => number;
   readonly ringRows: 1 | 2;
+  /** Width of the rear view's title, mm. */
+  readonly rearTitle: number;
   /** Longest value that a dimension may show on each axis, as text. */
   readonly longest: Readonly<Record<Axis, string>>;
 }
@@ -64,7 +66,7 @@ export function arrange(wanted: Wanted, scale: number, area: Rect, hand: Hand): 
   const rearLeft = main ? left + mainWidth + sideLabels + 8 : left;
   const rearLabels = main ? 0 : 3 + reachOf("z");
   const right = has("rear") ? rearLeft + size("y") + rearLabels : left + mainWidth + sideLabels;
-  if (right > area.right + 1e-6) return null;
+  if (Math.max(right, has("rear") ? rearLeft + wanted.rearTitle : 0) > area.right + 1e-6) return null;
 
   const placed: Placed[] = [];
   const nameRows = wanted.nameRows(scale);
@@ -91,9 +93,9 @@ export function arrange(wanted: Wanted, scale: number, area: Rect, hand: Hand): 
   } else {
     bottom = y - 1.5;
   }
-  const lineY = bottom + 3.5;
+  const lineY = bottom + 3.2;
   const dims = Math.max(main ? reachOf("x") : 0, has("rear") ? reachOf("y") : 0);
-  const end = lineY + dims + 1;
+  const end = lineY + dims + 0.8;
   if (end > area.bottom + 1e-6) return null;
   const lines: { x?: number; yPlan?: number; z?: number; yRear?: number } = {};
   if (main) lines.x = lineY;
@@ -107,7 +109,7 @@ export function arrange(wanted: Wanted, scale: number, area: Rect, hand: Hand): 
   return {
     scale, placed, names: { bottom: namesBottom, right: left + mainWidth + sideLabels }, lines, jog: JOG,
     right: widthOf(free) > 20 && heightOf(free) > 20 ? free : null,
-    beside: has("rear") && main ? { left: right + 8, right: area.right, top: freeBottom + 3, bottom: area.bottom } : null,
+    beside: has("rear") && main ? { left: Math.max(right, rearLeft + wanted.rearTitle) + 8, right: area.right, top: freeBottom + 3, bottom: area.bottom } : null,
     under: end + 2,
   };
 }

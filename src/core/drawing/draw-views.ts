@@ -1,9 +1,10 @@
-import { axisIndex, groundAt, PROJECTION, type Axis, type Vec2, type Vec3, type View } from "../frames.ts";
+import { axisIndex, groundAt, PROJECTION, type Axis, type Vec3, type View } from "../frames.ts";
 import type { Gap } from "../gaps/gap.ts";
 import type { Layout } from "../layout/schema.ts";
 import { EDGE, nameRow, type Arrangement, type Placed } from "./arrange.ts";
 import { balloonRadius, drawTags, planTags, type Tag } from "./balloons.ts";
 import { cutOf, lookOf, type DrawnItem, type Look } from "./drawn-items.ts";
+import { textWidth } from "./lettering.ts";
 import { chooseOrdinates, drawOrdinates, labelPitch, type Ordinate } from "./ordinates.ts";
 import { INDIGO, INK, VERDICT_INK, type Hand } from "./paper.ts";
 import type { Pen } from "./pen.ts";
@@ -41,9 +42,8 @@ export function drawViews(pen: Pen, arrangement: Arrangement, input: ViewsInput,
     return { placed, frame, looks, cut };
   });
   for (const { placed, frame, looks, cut } of scenes) {
-    const { layout: _, ...rest } = input;
     drawShell(pen, frame, layout, hand, placed.view === "rear" ? station : null);
-    drawGround(pen, frame, layout, rest.reach[placed.view === "side" ? "x" : "y"][0], rest.reach[placed.view === "side" ? "x" : "y"][1], hand);
+    drawGround(pen, frame, layout, input.reach[placed.view === "side" ? "x" : "y"][0], input.reach[placed.view === "side" ? "x" : "y"][1], hand);
     if (cut) drawCuts(pen, frame, looks, hand);
     else {
       drawTravel(pen, frame, looks, layout, hand);
@@ -51,7 +51,7 @@ export function drawViews(pen: Pen, arrangement: Arrangement, input: ViewsInput,
     }
   }
   for (const { placed, cut } of scenes) {
-    const title = placed.view === "plan" ? "PLAN" : placed.view === "side" ? "SIDE, FROM THE LEFT" : cut ? `SECTION A-A AT ${placeText(station! - input.zero.at[0], input.units)}, FROM BEHIND` : "REAR, FROM BEHIND";
+    const title = viewTitle(placed.view, cut ? station : null, input.zero, input.units);
     pen.text("titles", placed.title, title, hand.letters.head, { weight: "bold" });
   }
   const main = scenes.filter((scene) => scene.placed.view !== "rear");
@@ -87,7 +87,7 @@ function drawDatums(pen: Pen, arrangement: Arrangement, input: ViewsInput, scene
   if (main.length > 0) {
     const frame = main[0]!.frame;
     const { labels, left } = stackLabels(verticals(input, frame).map(({ x, datum }) => ({ x, datum: datum ?? CUT })), size, arrangement.names.right, rowsFor(arrangement, scenes, hand));
-    const titles = main.slice(1).map((scene) => ({ y: scene.placed.title[1], right: scene.placed.title[0] + [...titleText(scene)].length * 0.6 * hand.letters.head }));
+    const titles = main.slice(1).map((scene) => ({ y: scene.placed.title[1], right: scene.placed.title[0] + textWidth(viewTitle(scene.placed.view, null, input.zero, input.units), hand.letters.head) }));
     const foot = Math.max(...main.map((scene) => scene.placed.box.bottom)) + 2.2;
     for (const label of labels) {
       const top = arrangement.names.bottom - label.row * nameRow(hand) - size;
@@ -128,45 +128,58 @@ function drawDatums(pen: Pen, arrangement: Arrangement, input: ViewsInput, scene
   return remarks;
 }
 
-const titleText = (scene: Scene) => (scene.placed.view === "plan" ? "PLAN" : "SIDE, FROM THE LEFT");
+/** What stands above a view. */
+export function viewTitle(view: View, station: number | null, zero: Zero, units: SheetUnits): string {
+  if (view === "plan") return "PLAN";
+  if (view === "side") return "SIDE, FROM THE LEFT";
+  return station === null ? "REAR, FROM BEHIND" : `SECTION A-A AT ${placeText(station - zero.at[0], units)}, FROM BEHIND`;
+}
 const rowsFor = (arrangement: Arrangement, scenes: readonly Scene[], hand: Hand) => {
   const first = scenes.find((scene) => scene.placed.view !== "rear")!;
   return Math.max(0, Math.floor((arrangement.names.bottom - first.placed.title[1] - 0.3 * hand.letters.head) / nameRow(hand)));
 };
 
-/** How weighty a face is: the datums and ends first, then faces of large things. */
-function ordinates(input: ViewsInput, axis: Axis, frame: ViewFrame, across: "across" | "up", startOf: (item: DrawnItem, face: number) => number, base: number): Ordinate[] {
+interface Face {
+  /** Along its axis, car frame, mm. */
+  readonly at: number;
+  readonly text: string;
+  /** Datums and ends first, then faces of large things (area seen along the axis's view, mm2). */
+  readonly weight: number;
+  readonly of: string;
+  readonly datum: boolean;
+}
+
+/** What may be dimensioned along an axis. */
+function facesAlong(input: ViewsInput, axis: Axis): Face[] {
   const c = axisIndex(axis);
-  const zero = input.zero.at[c];
-  const { u, v } = PROJECTION[frame.view];
-  const along = (at: number) => {
-    const p: Vec2 = [c === u ? at : 0, c === v ? at : 0];
-    return onPaper(frame, p)[across === "across" ? 0 : 1];
-  };
-  const out: Ordinate[] = [];
-  const add = (at: number, weight: number, start: number, of?: string, datum = false, mark = "") => {
-    const text = placeText(at - zero, input.units);
-    if (inReach(input, axis, at)) out.push({ at: along(at), text: mark === "" ? text : `${text} ${mark}`, weight, start, ...(of ? { of } : {}), ...(datum ? { datum } : {}) });
+  const out: Face[] = [];
+  const add = (at: number, weight: number, of: string, mark = "", datum = false) => {
+    if (!inReach(input, axis, at)) return;
+    const text = placeText(at - input.zero.at[c], input.units);
+    out.push({ at, text: mark === "" ? text : `${text} ${mark}`, weight, of, datum });
   };
   // names of datums along x stand above the views; the others are told by their codes
-  for (const datum of input.datums) if (datum.axis === axis) add(datum.at, 1e9, base, datum.key, true, axis === "x" ? "" : datum.code);
-  if (axis === "x" && input.station !== null) add(input.station, 1e9, base, "section", false, "A");
-  if (axis === "z") add(groundAt(input.layout.chassis, axis === "z" ? input.layout.chassis.wheelbase : 0), 1e8, base, "ground");
-  const ends = input.items.filter((item) => item.is !== "tyre");
-  const body = axis === "x" ? [...(input.layout.body.side ?? []), ...(input.layout.body.top ?? [])].map((p) => p[0]) : axis === "y" ? (input.layout.body.top ?? []).map((p) => p[1]) : (input.layout.body.side ?? []).map((p) => p[1]);
-  if (body.length > 0) for (const at of [Math.min(...body), Math.max(...body)]) add(at, 1e8, base, "body");
-  for (const item of ends) {
-    if (item.is !== "part" || ROUND_ABOUT.has(item.kind)) continue;
+  for (const datum of input.datums) if (datum.axis === axis) add(datum.at, 1e12, datum.key, axis === "x" ? "" : datum.code, true);
+  if (axis === "x" && input.station !== null) add(input.station, 1e12, "section", "A");
+  if (axis === "z") add(groundAt(input.layout.chassis, input.layout.chassis.wheelbase), 1e11, "ground");
+  const { side = [], top = [] } = input.layout.body;
+  const body = axis === "x" ? [...side, ...top].map((p) => p[0]) : axis === "y" ? top.map((p) => p[1]) : side.map((p) => p[1]);
+  if (body.length > 0) for (const at of [body.reduce((a, b) => Math.min(a, b)), body.reduce((a, b) => Math.max(a, b))]) add(at, 1e11, "body");
+  for (const item of input.items) {
+    if (item.is !== "part" || FOLLOWERS.has(item.kind)) continue;
     const size = [0, 1, 2].map((k) => item.extent.high[k]! - item.extent.low[k]!);
-    const area = size[u]! * size[v]!;
-    add(item.extent.low[c]!, area, startOf(item, item.extent.low[c]!), item.key);
-    add(item.extent.high[c]!, area * 0.999, startOf(item, item.extent.high[c]!), item.key);
+    const area = axis === "y" ? size[0]! * size[1]! : size[0]! * size[2]!;
+    add(item.extent.low[c], area, item.key);
+    add(item.extent.high[c], area * 0.999, item.key);
   }
   return out;
 }
 
+/** Every value that a dimension along an axis may say. */
+export const ordinateTexts = (input: ViewsInput, axis: Axis): string[] => facesAlong(input, axis).map((face) => face.text);
+
 /** Kinds whose faces nobody sets out with a tape: they follow other things. */
-const ROUND_ABOUT: ReadonlySet<string> = new Set(["frame", "tyre", "wheel", "brake", "suspension", "glass", "panel", "other"]);
+const FOLLOWERS: ReadonlySet<string> = new Set(["frame", "tyre", "wheel", "brake", "suspension", "glass", "panel", "other"]);
 
 function drawDimensions(pen: Pen, arrangement: Arrangement, input: ViewsInput, scenes: readonly Scene[], hand: Hand): string[] {
   const pitch = labelPitch(hand.letters.dimension);
@@ -175,13 +188,11 @@ function drawDimensions(pen: Pen, arrangement: Arrangement, input: ViewsInput, s
   const run = (axis: Axis, view: View, at: number | undefined, runs: "across" | "up", low: number, high: number, base: number, share: number) => {
     const s = scene(view);
     if (!s || at === undefined) return;
-    const wanted = ordinates(input, axis, s.frame, runs, () => base, base);
-    const zero: [number, number, number] = [0, 0, 0];
+    const { u } = PROJECTION[view];
     const c = axisIndex(axis);
-    zero[c] = input.zero.at[c];
-    const { u, v } = PROJECTION[view];
-    const p = onPaper(s.frame, [zero[u], zero[v]]);
-    const origin = inReach(input, axis, input.zero.at[c]) ? p[runs === "across" ? 0 : 1] : null;
+    const along = (value: number) => onPaper(s.frame, c === u ? [value, 0] : [0, value])[runs === "across" ? 0 : 1];
+    const wanted = facesAlong(input, axis).map((face): Ordinate => ({ ...face, at: along(face.at), start: base }));
+    const origin = inReach(input, axis, input.zero.at[c]) ? along(input.zero.at[c]) : null;
     const most = Math.max(3, Math.floor(((high - low) / pitch) * share));
     const chosen = chooseOrdinates(wanted, pitch, low, high, most, 2.2 * pitch);
     drawOrdinates(pen, { runs, at, jog: arrangement.jog, origin }, chosen, hand);
@@ -235,9 +246,9 @@ function drawNumbers(pen: Pen, input: ViewsInput, main: readonly Scene[], sectio
     const tags = section.looks.filter((look) => look.item.label !== "").map((look): Tag => ({ text: look.item.label, of: look.item.key, shape: "disc", ink: INK, spots: spotsOf(look, [], section.frame).map(({ at, depth }) => ({ at, depth })), weight: (look.box.right - look.box.left) * (look.box.high - look.box.low) }));
     const plan = planTags(tags, section.placed.rings, section.placed.box.left, section.placed.box.right, [onPaper(section.frame, [0, 0])[0]], radius, busyness(linesOf(section.looks, section.frame), radius));
     drawTags(pen, plan, radius, hand);
-    if (plan.missed.length > 0) remarks.push(`No room in the section for the numbers ${plan.missed.map((tag) => tag.text).join(", ")}.`);
+    if (plan.missed.length > 0) remarks.push(`Numbers without room in the section: ${plan.missed.map((tag) => tag.text).join(", ")}.`);
   }
-  if (unseen.length > 0) remarks.push(`No room in the views for the numbers ${unseen.join(", ")}; their places are in the tables.`);
+  if (unseen.length > 0) remarks.push(`Numbers without room in these views: ${unseen.join(", ")}; see the tables.`);
   return remarks;
 }
 

@@ -49,7 +49,7 @@ export interface Hand {
   readonly pens: Pens;
   readonly letters: Letters;
 }
-const SMALL: Hand = { pens: { thick: 0.35, thin: 0.18, hair: 0.13, frame: 0.7 }, letters: { note: 2.2, table: 2.47, dimension: 2.47, head: 2.9, title: 4.79 } };
+const SMALL: Hand = { pens: { thick: 0.25, thin: 0.13, hair: 0.1, frame: 0.7 }, letters: { note: 2.2, table: 2.47, dimension: 2.47, head: 2.9, title: 4.79 } };
 const MEDIUM: Hand = { pens: { thick: 0.4, thin: 0.2, hair: 0.13, frame: 0.7 }, letters: { note: 2.2, table: 2.47, dimension: 3, head: 3.42, title: 4.79 } };
 const LARGE: Hand = { pens: { thick: 0.5, thin: 0.25, hair: 0.18, frame: 0.7 }, letters: { note: 2.47, table: 2.9, dimension: 3.42, head: 4.2, title: 6.85 } };
 const LARGEST: Hand = { pens: { thick: 0.5, thin: 0.25, hair: 0.18, frame: 0.7 }, letters: { note: 2.9, table: 3.42, dimension: 4.2, head: 4.79, title: 6.85 } };

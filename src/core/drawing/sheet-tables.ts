@@ -127,7 +127,7 @@ export function runsTable(layout: Layout, units: SheetUnits): Table | null {
 }
 
 /** Stance, mass and free litres, each with what governs it. */
-export function figuresTable(layout: Layout, report: SheetReport, units: SheetUnits): Table | null {
+export function figuresTable(layout: Layout, report: SheetReport, zero: Zero, units: SheetUnits): Table | null {
   const rows: Row[] = [];
   const names = namesOf(layout);
   const governs = (key: string | undefined) => (key === undefined ? [] : [key === "body" ? "body line" : (names.get(key) ?? key)]);
@@ -156,7 +156,7 @@ export function figuresTable(layout: Layout, report: SheetReport, units: SheetUn
     if (mass.centre) {
       add("on the front axle, kg", mass.frontAxle.toFixed(1));
       add("on the rear axle, kg", mass.rearAxle.toFixed(1));
-      mass.centre.forEach((at, i) => add(`centre of mass, ${"xyz"[i]!} from the car's zero`, placeText(at, units)));
+      mass.centre.forEach((at, i) => add(`centre of mass ${"xyz"[i]!}`, placeText(at - zero.at[i]!, units)));
     }
   }
   const spaceNames = new Map(layout.spaces.map((space) => [space.key, space.name]));
@@ -164,7 +164,7 @@ export function figuresTable(layout: Layout, report: SheetReport, units: SheetUn
   if (rows.length === 0) return null;
   return {
     title: "Figures", note: `as drawn, at ride height; ${units === "mm" ? "mm" : "inches"}`, rows,
-    columns: [{ head: "what, and what governs it", least: 20, wanted: longest(rows, 0, "what, and what governs it", 60) }, { head: "value", least: longest(rows, 1, "value", 14), wanted: 0, align: "right" }],
+    columns: [{ head: "what, and what governs it", least: 25, wanted: longest(rows, 0, "what, and what governs it", 60) }, { head: "value", least: longest(rows, 1, "value", 14), wanted: 0, align: "right" }],
   };
 }
 

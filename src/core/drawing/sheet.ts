@@ -1,18 +1,19 @@
-import { axisIndex, groundAt, type Axis, type View } from "../frames.ts";
+import { groundAt, type Axis, type View } from "../frames.ts";
 import type { Layout } from "../layout/schema.ts";
 import { arrange, type Arrangement, type Reach, type Wanted } from "./arrange.ts";
 import { balloonRadius } from "./balloons.ts";
-import { drawViews, type ViewsInput } from "./draw-views.ts";
+import { drawViews, ordinateTexts, viewTitle, type ViewsInput } from "./draw-views.ts";
 import { drawnItems, type DrawnItem } from "./drawn-items.ts";
 import { drawFrame } from "./frame.ts";
 import { CHECK_BAR } from "./furniture.ts";
 import { drawFoot } from "./foot.ts";
+import { textWidth } from "./lettering.ts";
 import { findTextOverlaps } from "./overlaps.ts";
 import { frameOf, HAND, inset, type Hand, PAPER_SIZES, rect, STANDARD_SCALES, widthOf, type PaperName, type Rect } from "./paper.ts";
 import { createPen, type Pen } from "./pen.ts";
 import type { SheetPlan } from "./plan.ts";
 import { sheetDatums, stackLabels, zeroOf, type SheetDatum } from "./sheet-datums.ts";
-import { placeText, unitName, type SheetUnits } from "./sheet-lengths.ts";
+import { unitName, type SheetUnits } from "./sheet-lengths.ts";
 import { clearGapsTable, datumsTable, figuresTable, gapsTable, placesTable, runsTable, type SheetReport } from "./sheet-tables.ts";
 import { drawTable, headHeight, tableHeight, tableWidths, type Table } from "./table.ts";
 import { drawTitleBlock, titleArea, type TitleBlock } from "./title-block.ts";
@@ -85,17 +86,12 @@ export function planSheets(layout: Layout, report: SheetReport, options: SheetOp
   const forViews = rect(content.left, content.top, content.right, title.top - 3);
   const lines = datums.filter((d) => d.axis === "x" && d.at >= reach.x[0] && d.at <= reach.x[1]).map((datum) => ({ datum, at: datum.at }));
   if (station !== null) lines.push({ datum: { key: "section", code: "A", name: "A", axis: "x", at: station }, at: station });
-  const longest = (axis: Axis): string => {
-    const said = [...reach[axis], ...datums.filter((d) => d.axis === axis).map((d) => d.at), ...(axis === "x" && station !== null ? [station] : [])].map((at) => placeText(at - zero.at[axisIndex(axis)], units).length);
-    // a fraction between the ends may be longer than theirs; codes of datums and the section's letter stand behind the value
-    const value = Math.max(...said, ...(units === "in-fraction" ? reach[axis].map((at) => placeText(Math.trunc((at - zero.at[axisIndex(axis)]) / 25.4) * 25.4, units).length + 6) : []));
-    return "0".repeat(value + (axis === "x" ? (station === null ? 0 : 2) : 1 + datums.at(-1)!.code.length));
-  };
-  const wanted: Wanted = { views: ["plan", "side", "rear"], reach, nameRows: (scale) => nameRowsOf(lines, scale, hand), ringRows: 1, longest: { x: longest("x"), y: longest("y"), z: longest("z") } };
+  const input: ViewsInput = { layout, items, gaps: report.gaps, datums, zero, units, station, reach };
+  const longest = (axis: Axis): string => ordinateTexts(input, axis).reduce((a, b) => (b.length > a.length ? b : a), "");
+  const wanted: Wanted = { views: ["plan", "side", "rear"], reach, nameRows: (scale) => nameRowsOf(lines, scale, hand), rearTitle: textWidth(viewTitle("rear", station, zero, units), hand.letters.head), ringRows: 1, longest: { x: longest("x"), y: longest("y"), z: longest("z") } };
   const { scale, groups } = groupViews(wanted, options.scale, forViews, items, paper);
 
-  const tables = [placesTable(layout, items, zero, units), gapsTable(layout, report, units), figuresTable(layout, report, units), runsTable(layout, units), datumsTable(datums, zero, units), clearGapsTable(layout, report, units)].filter((t): t is Table => t !== null && t.rows.length > 0);
-  const input: ViewsInput = { layout, items, gaps: report.gaps, datums, zero, units, station, reach };
+  const tables = [placesTable(layout, items, zero, units), gapsTable(layout, report, units), figuresTable(layout, report, zero, units), runsTable(layout, units), datumsTable(datums, zero, units), clearGapsTable(layout, report, units)].filter((t): t is Table => t !== null && t.rows.length > 0);
   const pages: { pen: Pen; remarks: string[]; drawing: boolean }[] = [];
   const flow = startFlow(tables);
   groups.forEach((arrangement, index) => {
@@ -119,7 +115,7 @@ export function planSheets(layout: Layout, report: SheetReport, options: SheetOp
     drawFoot(pen, rect(content.left, title.top, title.left - 4, content.bottom), [], hand, null);
     const boxes = [rect(content.left, content.top, content.right, title.top - 4)];
     const before = rowsLeft(flow);
-    for (const entry of flow) if (entry.done < entry.table.rows.length) placeInBoxes(pen, entry, boxes);
+    for (const entry of flow) if (entry.done < entry.table.rows.length) placeInBoxes(pen, entry, boxes, false);
     if (rowsLeft(flow) === before) throw new Error("a table found no room on an empty sheet");
     pages.push({ pen, remarks: [], drawing: false });
   }
@@ -140,24 +136,25 @@ export function planSheets(layout: Layout, report: SheetReport, options: SheetOp
     if (arrangement.right) boxes.push(arrangement.right);
     if (arrangement.beside) boxes.push(arrangement.beside);
     // beside the title block down to the foot, or above both over the whole width: whichever is larger
-    const left = rect(area.left, arrangement.under, block.left - 4, footTop - 4);
-    const whole = rect(area.left, arrangement.under, arrangement.beside ? arrangement.beside.left - 8 : area.right, Math.min(block.top, footTop) - 4);
+    const right = arrangement.beside ? arrangement.beside.left - 8 : area.right;
+    const left = rect(area.left, arrangement.under, Math.min(right, block.left - 4), footTop - 4);
+    const whole = rect(area.left, arrangement.under, right, Math.min(block.top, footTop) - 4);
     const room = (r: Rect) => Math.max(0, r.bottom - r.top - headHeight(hand)) * widthOf(r);
     const under = room(left) > room(whole) ? left : whole;
     if (under.bottom - under.top > headHeight(hand) + 8) boxes.push(under);
     for (const entry of entries) {
       if (entry.done >= entry.table.rows.length) continue;
-      placeInBoxes(pen, entry, boxes);
+      placeInBoxes(pen, entry, boxes, true);
     }
   }
 
-  function placeInBoxes(pen: Pen, entry: Entry, boxes: Rect[]): void {
+  function placeInBoxes(pen: Pen, entry: Entry, boxes: Rect[], onDrawing: boolean): void {
     const widths = tableWidths(entry.table, hand.letters.table);
     const rest = restOf(entry);
     const fitting = boxes.map((box, i) => ({ box, i, width: Math.min(widthOf(box), widths.wanted) })).filter(({ box }) => widthOf(box) >= widths.least);
     const whole = fitting.find(({ box, width }) => tableHeight(rest, width, hand) <= box.bottom - box.top);
-    // a table is begun on a drawing only where a good part of it fits
-    const part = fitting.filter(({ box, width }) => tableHeight(rest, width, hand, 3) <= box.bottom - box.top).sort((a, b) => b.box.bottom - b.box.top - (a.box.bottom - a.box.top))[0];
+    // a table that must break is begun only where a good part of it fits, in the order in which one reads
+    const part = !onDrawing || rest.rows.length > WHOLE_ROWS ? fitting.find(({ box, width }) => tableHeight(rest, width, hand, LEAST_ROWS) <= box.bottom - box.top) : undefined;
     const chosen = whole ?? part;
     if (!chosen) return;
     const { box, i, width } = chosen;
@@ -166,9 +163,14 @@ export function planSheets(layout: Layout, report: SheetReport, options: SheetOp
     const beside = rect(box.left + width + 8, box.top, box.right, box.bottom);
     const below = rect(box.left, drawn.bottom + 6, box.left + width, box.bottom);
     boxes.splice(i, 1, below, ...(widthOf(beside) > 30 ? [beside] : []));
-    if (entry.done < entry.table.rows.length) placeInBoxes(pen, entry, boxes);
+    if (entry.done < entry.table.rows.length) placeInBoxes(pen, entry, boxes, onDrawing);
   }
 }
+
+/** A table of up to so many rows is not broken to begin on a drawing. */
+const WHOLE_ROWS = 20;
+/** Rows a table shows at least where it is begun or gone on with. */
+const LEAST_ROWS = 5;
 
 interface Entry {
   readonly table: Table;
