@@ -15,9 +15,9 @@ const layoutOf = (name: string): Layout => {
 };
 
 interface ExpectedGap { a: string; b: string; distance: number; worst: number; required: number; margin: number; verdict: string; provisional?: boolean; listed?: boolean; why: string }
-interface Expected { gaps: ExpectedGap[]; mass?: { total: number; rearAxle: number }; spaces?: { key: string; grossLitres: number; freeLitres: number }[] }
+interface Expected { gaps: ExpectedGap[]; body?: { rearOverhang: number; frontOverhang: number; length: number; rearOverhangShare: number }; mass?: { total: number; rearAxle: number }; spaces?: { key: string; grossLitres: number; freeLitres: number }[] }
 
-describe.each(["front-engine", "electric"])("examples/%s", (name) => {
+describe.each(["dunlin", "front-engine", "electric"])("examples/%s", (name) => {
   const report = fullReport(layoutOf(`${name}.layout.json`));
   const expected = read(`${name}.expected.json`) as Expected;
 
@@ -30,7 +30,8 @@ describe.each(["front-engine", "electric"])("examples/%s", (name) => {
     if (want.provisional !== undefined) expect(found!.provisional).toBe(want.provisional);
   });
 
-  it("gives the hand-worked masses and litres", () => {
+  it("gives the hand-worked lengths, masses and litres", () => {
+    if (expected.body) for (const field of ["rearOverhang", "frontOverhang", "length", "rearOverhangShare"] as const) expect(report.body[field]).toBeCloseTo(expected.body[field], 9);
     if (expected.mass) {
       expect(report.mass.total).toBeCloseTo(expected.mass.total, 9);
       expect(report.mass.rearAxle).toBeCloseTo(expected.mass.rearAxle, 9);
