@@ -26,7 +26,8 @@ export default defineConfig(({ isSsrBuild }) => ({
         },
       }
     : { outDir: "dist/client", sourcemap: false, target: "es2022" },
-  server: { host: "127.0.0.1" },
+  // `npm run dev` says where its server is; the Host header stays the page's own, so that writes count as same-origin
+  server: { host: "127.0.0.1", proxy: process.env["API_URL"] ? Object.fromEntries(["/api", "/health"].map((path) => [path, { target: process.env["API_URL"]!, changeOrigin: false }])) : {} },
   test: {
     testTimeout: 30_000,
     hookTimeout: 60_000,

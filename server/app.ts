@@ -17,6 +17,7 @@ import { mountBuilds } from "./features/builds/builds.routes.ts";
 import { mountLayouts } from "./features/layouts/layouts.routes.ts";
 import { mountReports } from "./features/reports/reports.routes.ts";
 import { mountSignIn } from "./features/sign-in/sign-in.routes.ts";
+import { ABSOLUTE_LIFETIME_HOURS } from "./features/sign-in/people.repository.ts";
 import { whoIsAsking } from "./features/sign-in/who-is-asking.ts";
 import { HttpFault } from "./http/fault.ts";
 import type { Mounted } from "./http/mount.ts";
@@ -41,7 +42,9 @@ export function createApp({ db, pg: pool, pool: workers, settings, log, client, 
   const app = express();
   const secure = settings.publicUrl?.startsWith("https:") ?? false;
   app.disable("x-powered-by");
-  if (settings.production) app.set("trust proxy", 1);
+  app.set("trust proxy", settings.proxies);
+  // one query parser for all: a name given twice is a list, which no schema takes for a single value
+  app.set("query parser", "simple");
   app.use(pinoHttp({
     logger: log, genReqId: () => crypto.randomUUID(), quietReqLogger: true, autoLogging: { ignore: (request) => !request.url?.startsWith("/api") },
     serializers: { req: (request: { id: string; method: string; url: string }) => ({ id: request.id, method: request.method, url: request.url.split("?")[0] }), res: (response: { statusCode: number }) => ({ status: response.statusCode }) },
@@ -54,9 +57,13 @@ export function createApp({ db, pg: pool, pool: workers, settings, log, client, 
         manifestSrc: ["'self'"], formAction: ["'self'"], baseUri: ["'none'"], frameAncestors: ["'none'"], ...(secure ? { upgradeInsecureRequests: [] } : {}),
       },
     },
-    strictTransportSecurity: secure ? { maxAge: 31_536_000, includeSubDomains: false } : false,
+    strictTransportSecurity: secure ? { maxAge: 31_536_000, includeSubDomains: true } : false,
     crossOriginOpenerPolicy: secure ? { policy: "same-origin" } : false, originAgentCluster: secure,
   }));
+  app.use((request, response, next) => {
+    response.setHeader("X-Request-Id", String(request.id));
+    next();
+  });
   app.use(compression());
 
   app.get("/health/live", (_request, response) => void response.json({ live: true }));
@@ -67,6 +74,8 @@ export function createApp({ db, pg: pool, pool: workers, settings, log, client, 
 
   const api = express.Router();
   const Store = connectPgSimple(session);
+  const cookie = { name: secure ? "__Host-handbreadth" : "handbreadth", httpOnly: true, sameSite: "lax", secure, path: "/" } as const;
+  const { name: cookieName, ...cookieOptions } = cookie;
   api.use("/api", (_request, response, next) => {
     response.setHeader("Cache-Control", "no-store");
     next();
@@ -74,14 +83,14 @@ export function createApp({ db, pg: pool, pool: workers, settings, log, client, 
   api.use("/api", sameOrigin(settings.publicUrl));
   api.use("/api", session({
     store: new Store({ pool, tableName: "session", createTableIfMissing: false, pruneSessionInterval: 3600, errorLog: (...words: unknown[]) => log.warn(words.map(String).join(" ")) }),
-    name: secure ? "__Host-handbreadth" : "handbreadth", secret: settings.sessionSecret, resave: false, saveUninitialized: false, rolling: false,
-    cookie: { httpOnly: true, sameSite: "lax", secure, path: "/", maxAge: 14 * 24 * 3_600_000 },
+    name: cookieName, secret: settings.sessionSecret, resave: false, saveUninitialized: false, rolling: false,
+    cookie: { ...cookieOptions, maxAge: ABSOLUTE_LIFETIME_HOURS * 3_600_000 },
   }));
-  api.use("/api", whoIsAsking(db));
+  api.use("/api", whoIsAsking(db, { demo: !settings.production }));
 
   const limiter = (keyPrefix: string, points: number) => new RateLimiterPostgres({ storeClient: pool, storeType: "pool", tableName: "rate_limit", tableCreated: true, keyPrefix, points, duration: 15 * 60 });
   const mounted: Mounted = { router: api, endpoints: [], options: { db, checkResponses: !settings.production } };
-  mountSignIn(mounted, db, { production: settings.production, limits: { byAddress: limiter("address", signInTries), byOrigin: limiter("origin", signInTries * 10) } });
+  mountSignIn(mounted, db, { production: settings.production, cookie, limits: { byAddress: limiter("address", signInTries), byOrigin: limiter("origin", signInTries * 10) } });
   mountBuilds(mounted, db);
   mountLayouts(mounted, db, workers);
   mountReports(mounted, db, workers);
@@ -91,6 +100,9 @@ export function createApp({ db, pg: pool, pool: workers, settings, log, client, 
   app.use(api);
 
   if (client !== null && existsSync(join(client, "index.html"))) serveClient(app, client);
+  app.use(() => {
+    throw new HttpFault("not-found", "There is nothing at this address.");
+  });
   app.use(renderError);
   return { app, endpoints: mounted.endpoints };
 }
@@ -99,7 +111,9 @@ export function createApp({ db, pg: pool, pool: workers, settings, log, client, 
 function serveClient(app: Express, client: string): void {
   app.use("/assets", express.static(join(client, "assets"), { immutable: true, maxAge: "365d", fallthrough: false }));
   app.use(express.static(client, { index: false, maxAge: "1h" }));
-  app.get("/{*path}", (_request, response) => {
+  app.get("/{*path}", (request, response, next) => {
+    // an address that looks like a file and is none is not a page
+    if (/\.[^/]*$|\/\./.test(request.path)) return next();
     response.setHeader("Cache-Control", "no-cache");
     response.sendFile(join(client, "index.html"));
   });

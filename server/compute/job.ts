@@ -12,3 +12,14 @@ export type Job =
 
 /** A sheet as bytes, or why it cannot be made as asked. */
 export type SheetAnswer = { readonly ok: true; readonly pdf: Uint8Array } | { readonly ok: false; readonly field: string; readonly message: string };
+
+/** Whether a job may take long, and about how much memory it needs: from the size of what goes in, before it starts. */
+export function costOf(job: Job): { long: boolean; megabytes: number } {
+  if (job.kind === "parse") {
+    const megabytes = job.text.length / 1024 / 1024;
+    return { long: megabytes > 1, megabytes: 30 + 20 * megabytes };
+  }
+  const { parts, runs } = job.layout;
+  const solids = parts.reduce((sum, part) => sum + part.solids.length, 0) + runs.reduce((sum, run) => sum + run.nodes.length, 0);
+  return { long: job.kind === "sheet" || solids > 400, megabytes: (job.kind === "sheet" ? 120 : 60) + 0.15 * solids };
+}

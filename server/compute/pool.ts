@@ -1,5 +1,5 @@
 import { Worker } from "node:worker_threads";
-import type { Job } from "./job.ts";
+import { costOf, type Job } from "./job.ts";
 
 export type JobFaultReason = "busy" | "deadline" | "died" | "cancelled" | "failed";
 
@@ -15,6 +15,8 @@ export class JobFault extends Error {
 
 interface Waiting {
   readonly job: Job;
+  readonly long: boolean;
+  readonly megabytes: number;
   readonly deadlineMs: number;
   readonly resolve: (value: unknown) => void;
   readonly reject: (fault: JobFault) => void;
@@ -29,24 +31,29 @@ export interface Pool {
 }
 
 const MOST_WAITING = 32;
-/** Jobs estimated to need more than this are refused before they start, bytes of input text. */
-const MOST_INPUT = 24 * 1024 * 1024;
+/** What all running jobs together are estimated to need at most. A worker's heap limit does not cover typed arrays: so the input decides. */
+const BUDGET_MEGABYTES = 1024;
+
+type Answer = { readonly ok: true; readonly value: unknown } | { readonly ok: false; readonly message: string };
 
 /**
- * Workers that run core's functions off the event loop: a queue with a limit, a deadline for each job, cancel by ending the worker and starting another. A worker
- * that dies takes only its own job with it.
+ * Workers that run core's functions off the event loop: a queue with a limit, a deadline for each job, a budget of memory, cancel by ending the worker and
+ * starting another. One worker is kept for short jobs. A worker that dies takes only its own job with it; no job is tried twice.
  */
 export function createPool(script: URL, size: number): Pool {
   const idle: Worker[] = [];
   const all = new Set<Worker>();
   const queue: Waiting[] = [];
-  let running = 0;
+  const running = new Set<Waiting>();
   let closed = false;
 
   const start = (): Worker => {
-    const worker = new Worker(script, { resourceLimits: { maxOldGenerationSizeMb: 512 } });
+    // no settings and no secrets reach a worker
+    const worker = new Worker(script, { resourceLimits: { maxOldGenerationSizeMb: 512 }, env: {} });
     all.add(worker);
-    worker.once("exit", () => {
+    // an idle one that dies is only forgotten; what a busy one's job is told stands in `give`
+    worker.on("error", () => undefined);
+    worker.on("exit", () => {
       all.delete(worker);
       const at = idle.indexOf(worker);
       if (at >= 0) idle.splice(at, 1);
@@ -55,56 +62,66 @@ export function createPool(script: URL, size: number): Pool {
     return worker;
   };
 
+  /** The first in the queue that may start now. */
+  const takeNext = (): Waiting | undefined => {
+    const used = [...running].reduce((sum, one) => sum + one.megabytes, 0);
+    const longOnes = [...running].filter((one) => one.long).length;
+    const at = queue.findIndex((one) => (!one.long || longOnes < size - 1) && (running.size === 0 || used + one.megabytes <= BUDGET_MEGABYTES));
+    return at < 0 ? undefined : queue.splice(at, 1)[0];
+  };
+
   const pump = () => {
-    while (!closed && queue.length > 0 && running < size) {
-      const next = queue.shift()!;
-      if (next.signal?.aborted) {
-        next.reject(new JobFault("cancelled", "cancelled"));
-        continue;
-      }
+    while (!closed && running.size < size) {
+      const next = takeNext();
+      if (!next) return;
       give(next, idle.pop() ?? start());
     }
   };
 
   const give = (next: Waiting, worker: Worker) => {
-    running++;
+    running.add(next);
     let done = false;
     const finish = (settle: () => void, reuse: boolean) => {
       if (done) return;
       done = true;
-      running--;
+      running.delete(next);
       clearTimeout(timer);
-      worker.removeAllListeners("message");
-      worker.removeAllListeners("error");
-      worker.off("exit", died);
-      next.signal?.removeEventListener("abort", abort);
+      worker.off("message", onMessage).off("error", onError).off("exit", onExit);
+      next.signal?.removeEventListener("abort", onAbort);
       if (reuse && !closed) idle.push(worker);
       else void worker.terminate();
       settle();
       pump();
     };
-    const died = () => finish(() => next.reject(new JobFault("died", "the worker ended")), false);
-    const abort = () => finish(() => next.reject(new JobFault("cancelled", "cancelled")), false);
-    const timer = setTimeout(() => finish(() => next.reject(new JobFault("deadline", "This took too long and was stopped.")), false), next.deadlineMs);
-    next.signal?.addEventListener("abort", abort, { once: true });
-    worker.once("message", (answer: { ok: boolean; value?: unknown; message?: string }) =>
-      finish(() => (answer.ok ? next.resolve(answer.value) : next.reject(new JobFault("failed", answer.message ?? "failed"))), true));
-    worker.once("error", (error: Error) => finish(() => next.reject(new JobFault("died", error.message)), false));
-    worker.once("exit", died);
+    const fail = (reason: JobFaultReason, message: string) => finish(() => next.reject(new JobFault(reason, message)), false);
+    const onMessage = (answer: Answer) => finish(() => (answer.ok ? next.resolve(answer.value) : next.reject(new JobFault("failed", answer.message))), true);
+    const onError = (error: Error) => fail("died", error.message);
+    const onExit = () => fail("died", "the worker ended");
+    const onAbort = () => fail("cancelled", "cancelled");
+    const timer = setTimeout(() => fail("deadline", "This took too long and was stopped."), next.deadlineMs);
+    next.signal?.addEventListener("abort", onAbort, { once: true });
+    worker.on("message", onMessage).on("error", onError).on("exit", onExit);
     worker.postMessage(next.job);
   };
 
   return {
     run<T>(job: Job, { deadlineMs = 30_000, signal }: { deadlineMs?: number; signal?: AbortSignal } = {}) {
       if (closed) return Promise.reject(new JobFault("busy", "The server is stopping."));
+      if (signal?.aborted) return Promise.reject(new JobFault("cancelled", "cancelled"));
       if (queue.length >= MOST_WAITING) return Promise.reject(new JobFault("busy", "Many computations are waiting. Try again in a moment."));
-      if (job.kind === "parse" && job.text.length > MOST_INPUT) return Promise.reject(new JobFault("busy", "That is more than can be taken at once."));
       return new Promise<T>((resolve, reject) => {
-        queue.push({ job, deadlineMs, resolve: resolve as (value: unknown) => void, reject, signal });
+        const waiting: Waiting = { job, ...costOf(job), deadlineMs, resolve: resolve as (value: unknown) => void, reject, signal };
+        queue.push(waiting);
+        signal?.addEventListener("abort", () => {
+          const at = queue.indexOf(waiting);
+          if (at < 0) return;
+          queue.splice(at, 1);
+          reject(new JobFault("cancelled", "cancelled"));
+        }, { once: true });
         pump();
       });
     },
-    load: () => ({ running, waiting: queue.length }),
+    load: () => ({ running: running.size, waiting: queue.length }),
     async close() {
       closed = true;
       for (const one of queue.splice(0)) one.reject(new JobFault("busy", "The server is stopping."));

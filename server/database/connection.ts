@@ -21,9 +21,9 @@ export function connect(url: string, log: (message: string) => void, max = 10): 
 /** PostgreSQL is away or too busy: to be answered with 503, not 500. */
 export function isDatabaseAway(error: unknown): boolean {
   const { code, message } = (error ?? {}) as { code?: string; message?: string };
-  if (code !== undefined && (/^(ECONN|EPIPE|ETIMEDOUT|ENOTFOUND)/.test(code) || /^(08|57P|53|55P03)/.test(code))) return true;
-  return typeof message === "string" && /timeout exceeded when trying to connect|Connection terminated|connection timeout/i.test(message);
+  if (code !== undefined && (/^(ECONN|EPIPE|ETIMEDOUT|ENOTFOUND|EHOSTUNREACH)/.test(code) || /^(08|57P|53)/.test(code))) return true;
+  return typeof message === "string" && /timeout exceeded when trying to connect|Connection terminated|connection timeout|not queryable|Cannot use a pool after calling end/i.test(message);
 }
 
 /** A statement was stopped for taking too long, or lost a race that a retry may win. */
-export const isContention = (error: unknown): boolean => ["57014", "40001", "40P01"].includes((error as { code?: string } | null)?.code ?? "");
+export const isContention = (error: unknown): boolean => ["57014", "55P03", "40001", "40P01", "25P03"].includes((error as { code?: string } | null)?.code ?? "");

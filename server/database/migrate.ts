@@ -22,4 +22,5 @@ export async function grantApplication(db: Kysely<Database>, role: string): Prom
   await sql`grant usage on schema public to ${name}`.execute(db);
   await sql`grant select, insert, update, delete on all tables in schema public to ${name}`.execute(db);
   await sql`revoke update, delete, truncate on layout_change from ${name}`.execute(db);
+  await sql`revoke insert, update, delete on kysely_migration, kysely_migration_lock from ${name}`.execute(db);
 }

@@ -5,7 +5,7 @@ import { faultsOf } from "#core/layout/parse-layout.ts";
 import type { Endpoint } from "#contracts/endpoint.ts";
 import type { Db } from "../database/connection.ts";
 import { HttpFault, notFound } from "./fault.ts";
-import { wellFormed } from "./well-formed.ts";
+import { isTooDeep, wellFormed } from "./well-formed.ts";
 
 /** Who is asking, as the sign-in row of this request says. */
 export interface Asker {
@@ -28,6 +28,8 @@ export interface Context<P, Q, B> {
   readonly role: Role;
   readonly request: Request;
   readonly response: Response;
+  /** One transaction that writes, all or nothing. Whether the asker may is read again inside it: a role that was taken away meanwhile commits nothing. */
+  readonly write: <T>(work: (tx: Db) => Promise<T>) => Promise<T>;
 }
 
 export interface MountOptions {
@@ -66,14 +68,25 @@ export function mount<P extends z.ZodType, Q extends z.ZodType, B extends z.ZodT
     const query = take(endpoint.query, { ...request.query }, "query");
     await readBody(request, response);
     const body = endpoint.bodyAsText || endpoint.method === "GET" ? request.body : take(endpoint.body, request.body ?? {}, "");
-    const result = await handler({ params: params.data, query, body: body as z.output<B>, personId, role, request, response });
+    const write = <T>(work: (tx: Db) => Promise<T>) =>
+      db.transaction().execute(async (tx) => {
+        await admit(tx, endpoint, request, true, "held");
+        return work(tx);
+      });
+    const result = await handler({ params: params.data, query, body: body as z.output<B>, personId, role, request, response, write });
     if (result === SENT) return;
-    if (checkResponses) endpoint.response.parse(result);
+    if (checkResponses) checkResponse(endpoint, result);
     response.json(result);
   });
 }
 
-async function admit(db: Db, endpoint: Endpoint, request: Request, paramsFit: boolean): Promise<{ personId: string; role: Role }> {
+function checkResponse(endpoint: Endpoint, result: unknown): void {
+  const checked = endpoint.response.safeParse(result);
+  if (!checked.success) throw new Error(`${endpoint.name} answers what its contract does not say: ${JSON.stringify(checked.error.issues.slice(0, 5))}`);
+}
+
+/** Settles whether the asker may. "held": the membership keeps as it is until the transaction has ended. */
+async function admit(db: Db, endpoint: Endpoint, request: Request, paramsFit: boolean, membership: "looked at" | "held" = "looked at"): Promise<{ personId: string; role: Role }> {
   const { policy } = endpoint;
   if (policy.who === "anyone") return { personId: request.asker?.personId ?? "", role: "viewer" };
   if (!request.asker) throw new HttpFault("not-signed-in", "Sign in first.");
@@ -81,7 +94,8 @@ async function admit(db: Db, endpoint: Endpoint, request: Request, paramsFit: bo
   if (policy.who === "signed-in") return { personId, role: "viewer" };
   if (!paramsFit) throw notFound("build");
   const buildId = String(request.params["buildId"]);
-  const member = await db.selectFrom("membership").select("role").where("build_id", "=", buildId).where("person_id", "=", personId).executeTakeFirst();
+  const query = db.selectFrom("membership").select("role").where("build_id", "=", buildId).where("person_id", "=", personId);
+  const member = await (membership === "held" ? query.forShare() : query).executeTakeFirst();
   if (!member) throw notFound("build");
   if (!policy.roles.includes(member.role)) throw new HttpFault("wrong-role", `Only ${wordList(policy.roles)} may do this; you are ${member.role} here.`);
   return { personId, role: member.role };
@@ -102,8 +116,13 @@ function bodyReader(endpoint: Endpoint): (request: Request, response: Response) 
   const limit = endpoint.bodyLimit ?? 100 * 1024;
   const parse = endpoint.bodyAsText ? express.text({ type: "application/json", limit, inflate: false }) : express.json({ limit, inflate: false, strict: false, reviver: wellFormed });
   return (request, response) => {
-    const hasBody = request.headers["transfer-encoding"] !== undefined || (request.headers["content-length"] ?? "0") !== "0";
-    if (hasBody && !request.is("application/json")) throw new HttpFault("wrong-type", "Send JSON (Content-Type: application/json).");
-    return new Promise((resolve, reject) => parse(request, response, (error?: unknown) => (error ? reject(error) : resolve())));
+    // on every write, also without a body: no form of another site can send this type without being asked first
+    if (!/^application\/json\s*(;|$)/i.test(request.headers["content-type"] ?? "")) throw new HttpFault("wrong-type", "Send JSON (Content-Type: application/json).");
+    return new Promise((resolve, reject) =>
+      parse(request, response, (error?: unknown) => {
+        if (error) reject(error instanceof Error ? error : new Error(String(error)));
+        else if (!endpoint.bodyAsText && isTooDeep(request.body)) reject(new HttpFault("bad-json", "The body is nested too deep."));
+        else resolve();
+      }));
   };
 }

@@ -6,4 +6,17 @@ export function wellFormed(key: string, value: unknown): unknown {
   return value;
 }
 
+/** Deeper than anything in a layout: data that only wants to overflow a stack further on. */
+const DEEPEST = 64;
+
+/** True for a value nested too deep; looks level by level, without recursion. */
+export function isTooDeep(json: unknown): boolean {
+  let level: unknown[] = [json];
+  for (let depth = 0; level.length > 0; depth++) {
+    if (depth > DEEPEST) return true;
+    level = level.flatMap((value) => (typeof value === "object" && value !== null ? Object.values(value).filter((inner) => typeof inner === "object" && inner !== null) : []));
+  }
+  return false;
+}
+
 const HALF_PAIR = /[\ud800-\udbff](?![\udc00-\udfff])|(?<![\ud800-\udbff])[\udc00-\udfff]/;

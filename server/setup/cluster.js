@@ -37,8 +37,7 @@ function clusterUser() {
   const id = (/** @type {string} */ flag) => Number(spawnSync("id", [flag, "postgres"], { encoding: "utf8" }).stdout);
   const [uid, gid] = [id("-u"), id("-g")];
   if (!uid) {
-    say("There is no OS user named postgres to run the database as. Install Debian's postgresql package, or start as an ordinary user.");
-    process.exit(1);
+    throw new Error("There is no OS user named postgres to run the database as. Install Debian's postgresql package, or start as an ordinary user.");
   }
   return { uid, gid };
 }
@@ -154,8 +153,7 @@ export async function startCluster({ name = "pg", durable = true } = {}) {
   const version = dataVersion(folder);
   const installed = bin.split("/").at(-2);
   if (version !== installed) {
-    say(`The database in ${data} was made by PostgreSQL ${version}; this machine has ${installed}. Either install postgresql-${version}, or export your layouts with ${version} and remove ${folder} to begin anew.`);
-    process.exit(1);
+    throw new Error(`The database in ${data} was made by PostgreSQL ${version}; this machine has ${installed}. Either install postgresql-${version} and start again, or, to begin anew without what is in it, remove ${folder}.`);
   }
   const secret = JSON.parse(readFileSync(secrets, "utf8"));
   const portFile = join(folder, "port");

@@ -3,16 +3,16 @@ import { ROLES } from "#core/layout/commands.ts";
 import { endpoint, EVERY_ROLE, id, members, signedIn } from "./endpoint.ts";
 
 export const roleSchema = z.enum(ROLES);
-export const buildSchema = z.object({ id, name: z.string(), role: roleSchema, createdAt: z.iso.datetime(), layouts: z.int(), members: z.int(), updatedAt: z.iso.datetime() });
+export const buildSchema = z.strictObject({ id, name: z.string(), role: roleSchema, createdAt: z.iso.datetime(), layouts: z.int(), members: z.int(), updatedAt: z.iso.datetime() });
 export type Build = z.output<typeof buildSchema>;
-export const memberSchema = z.object({ personId: id, name: z.string(), email: z.string(), role: roleSchema, since: z.iso.datetime() });
+export const memberSchema = z.strictObject({ personId: id, name: z.string(), email: z.string(), role: roleSchema, since: z.iso.datetime() });
 
 const buildParams = z.strictObject({ buildId: id });
 const name = z.string().trim().min(1).max(120);
 
-export const listBuilds = endpoint({ name: "listBuilds", method: "GET", path: "/api/builds", policy: signedIn, response: z.object({ builds: z.array(buildSchema) }) });
+export const listBuilds = endpoint({ name: "listBuilds", method: "GET", path: "/api/builds", policy: signedIn, response: z.strictObject({ builds: z.array(buildSchema) }) });
 export const createBuild = endpoint({ name: "createBuild", method: "POST", path: "/api/builds", policy: signedIn, body: z.strictObject({ name }), response: buildSchema });
 export const getBuild = endpoint({ name: "getBuild", method: "GET", path: "/api/builds/:buildId", policy: members(...EVERY_ROLE), params: buildParams, response: buildSchema });
 export const renameBuild = endpoint({ name: "renameBuild", method: "PATCH", path: "/api/builds/:buildId", policy: members("owner"), params: buildParams, body: z.strictObject({ name }), response: buildSchema });
-export const deleteBuild = endpoint({ name: "deleteBuild", method: "DELETE", path: "/api/builds/:buildId", policy: members("owner"), params: buildParams, response: z.object({ deleted: z.literal(true) }) });
-export const listMembers = endpoint({ name: "listMembers", method: "GET", path: "/api/builds/:buildId/members", policy: members(...EVERY_ROLE), params: buildParams, response: z.object({ members: z.array(memberSchema) }) });
+export const deleteBuild = endpoint({ name: "deleteBuild", method: "DELETE", path: "/api/builds/:buildId", policy: members("owner"), params: buildParams, response: z.strictObject({ deleted: z.literal(true) }) });
+export const listMembers = endpoint({ name: "listMembers", method: "GET", path: "/api/builds/:buildId/members", policy: members(...EVERY_ROLE), params: buildParams, response: z.strictObject({ members: z.array(memberSchema) }) });

@@ -39,12 +39,15 @@ describe("a command", () => {
     expect(history.changes[0]).toMatchObject({ seq: 1, label: "Move ecu", by: { name: "Maren Built" } });
   });
 
-  it("under an id that stood for something else, or for somebody else, is refused", async () => {
+  it("under an id that stood for something else is refused; an id of somebody else is as unknown", async () => {
     const path = await copy();
     const body = move("ecu", 5);
     await owner.post(`${path}/commands`).send(body).expect(200);
     await owner.post(`${path}/commands`).send({ ...body, command: { ...body.command, by: [6, 0, 0] } }).expect(422);
-    await fabricator.post(`${path}/commands`).send({ ...body, command: { kind: "status", key: "ecu", status: "fitted" } }).expect(422);
+    const elsewhere = await copy();
+    await owner.post(`${elsewhere}/commands`).send(body).expect(422);
+    const theirs = await fabricator.post(`${path}/commands`).send({ ...body, base: 1, command: { kind: "status", key: "ecu", status: "fitted" } }).expect(200);
+    expect(theirs.body).toMatchObject({ seq: 2, replay: false });
   });
 
   it("conflicts only where what it touches changed after its base, and then shows the values stored", async () => {

@@ -39,7 +39,7 @@ export async function startTestServer({ publicUrl = null, signInTries = 1000, cl
   if (through !== undefined) address.port = String(through);
   const connection = connect(address.toString(), () => undefined, 8);
   const workers = createPool(new URL("../../dist/server/worker.js", import.meta.url), 2);
-  const settings: Settings = { databaseUrl: address.toString(), migrationUrl: addressOf(cluster, name), sessionSecret: "a-secret-for-tests-that-is-long-enough", publicUrl, production: publicUrl !== null, port: 0 };
+  const settings: Settings = { databaseUrl: address.toString(), migrationUrl: addressOf(cluster, name), sessionSecret: "a-secret-for-tests-that-is-long-enough", publicUrl, production: publicUrl !== null, port: null, proxies: publicUrl === null ? 0 : 1 };
   const { app, endpoints } = createApp({ db: connection.db, pg: connection.pool, pool: workers, settings, log, client, signInTries });
   return {
     app, endpoints, connection, owner, workers, settings,

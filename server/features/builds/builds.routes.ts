@@ -11,17 +11,17 @@ export function mountBuilds(mounted: Mounted, db: Db): void {
     return build;
   };
   mount(mounted, contract.listBuilds, async ({ personId }) => ({ builds: await builds.listBuilds(db, personId) }));
-  mount(mounted, contract.createBuild, async ({ personId, body }) => {
-    const id = await db.transaction().execute((tx) => builds.insertBuild(tx, body.name, personId));
+  mount(mounted, contract.createBuild, async ({ personId, body, write }) => {
+    const id = await write((tx) => builds.insertBuild(tx, body.name, personId));
     return found(personId, id);
   });
   mount(mounted, contract.getBuild, ({ personId, params }) => found(personId, params.buildId));
-  mount(mounted, contract.renameBuild, async ({ personId, params, body }) => {
-    await builds.updateBuildName(db, params.buildId, body.name);
+  mount(mounted, contract.renameBuild, async ({ personId, params, body, write }) => {
+    await write((tx) => builds.updateBuildName(tx, params.buildId, body.name));
     return found(personId, params.buildId);
   });
-  mount(mounted, contract.deleteBuild, async ({ params }) => {
-    await builds.deleteBuild(db, params.buildId);
+  mount(mounted, contract.deleteBuild, async ({ params, write }) => {
+    await write((tx) => builds.deleteBuild(tx, params.buildId));
     return { deleted: true as const };
   });
   mount(mounted, contract.listMembers, async ({ params }) => ({ members: await builds.listMembers(db, params.buildId) }));

@@ -24,6 +24,8 @@ export interface CommandAnswer {
   readonly replay: boolean;
 }
 
+const keyReused = () => new HttpFault("key-reused", "This command id was already used for something else.");
+
 /**
  * Takes one edit: all or nothing, in one transaction. Role and membership are read inside it; edits of one layout take turns on its row's lock; a repeated id gets
  * its first answer; a command conflicts only where something it reads or writes changed after the seq it was based on.
@@ -36,10 +38,10 @@ export async function giveCommand(db: Db, given: GivenCommand): Promise<CommandA
     const layout = await lockLayout(tx, given.buildId, given.layoutId);
     if (!layout) throw notFound("layout");
 
-    const known = await findChange(tx, given.commandId);
+    const known = await findChange(tx, given.personId, given.commandId);
     if (known) {
-      if (known.person_id !== given.personId || known.layout_id !== given.layoutId || known.request_hash !== requestHash) {
-        throw new HttpFault("key-reused", "This command id was already used for something else.");
+      if (known.layout_id !== given.layoutId || known.request_hash !== requestHash) {
+        throw keyReused();
       }
       return { seq: known.seq, diff: known.diff as unknown as Diff, replay: true };
     }
@@ -63,10 +65,11 @@ export async function giveCommand(db: Db, given: GivenCommand): Promise<CommandA
     if (!applied.ok) throw new HttpFault("refused", applied.reason, { fields: applied.fields ? [...applied.fields] : undefined });
     const seq = layout.seq + 1;
     await writeDiff(tx, given.layoutId, seq, given.personId, applied.diff, applied.layout);
-    await insertChange(tx, {
+    const inserted = await insertChange(tx, {
       layout_id: given.layoutId, seq, command_id: given.commandId, person_id: given.personId, label: given.label, kind: given.command.kind,
       command: JSON.stringify(given.command), request_hash: requestHash, diff: JSON.stringify(applied.diff),
     });
+    if (!inserted) throw keyReused();
     return { seq, diff: applied.diff, replay: false };
   });
 }

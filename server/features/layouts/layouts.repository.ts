@@ -88,8 +88,9 @@ export async function writeDiff(db: Db, layoutId: string, seq: number, personId:
 
 /** Items among some names that changed after a seq; removed ones too, from the history. */
 export async function listChangedSince(db: Db, layoutId: string, base: number): Promise<Set<string>> {
-  const rows = await db.selectFrom("layout_change").select("diff").where("layout_id", "=", layoutId).where("seq", ">", base).execute();
-  return new Set(rows.flatMap((row) => (row.diff as unknown as { list: string; key: string }[]).map((change) => `${change.list}/${change.key}`)));
+  const { rows } = await sql<{ list: string; key: string }>`select distinct c->>'list' as list, c->>'key' as key from layout_change, jsonb_array_elements(diff) as c
+    where layout_id = ${layoutId} and seq > ${base}`.execute(db);
+  return new Set(rows.map((row) => `${row.list}/${row.key}`));
 }
 
 export interface NewChange {
@@ -104,12 +105,15 @@ export interface NewChange {
   readonly diff: string;
 }
 
-export async function insertChange(db: Db, change: NewChange): Promise<void> {
-  await db.insertInto("layout_change").values(change).execute();
+/** @returns false where this person's command id was taken at the same moment for another layout */
+export async function insertChange(db: Db, change: NewChange): Promise<boolean> {
+  const { numInsertedOrUpdatedRows } = await db.insertInto("layout_change").values(change).onConflict((c) => c.columns(["person_id", "command_id"]).doNothing()).executeTakeFirst();
+  return numInsertedOrUpdatedRows === 1n;
 }
 
-export function findChange(db: Db, commandId: string) {
-  return db.selectFrom("layout_change").select(["layout_id", "seq", "person_id", "request_hash", "diff"]).where("command_id", "=", commandId).executeTakeFirst();
+/** A person's command as it was first taken. */
+export function findChange(db: Db, personId: string, commandId: string) {
+  return db.selectFrom("layout_change").select(["layout_id", "seq", "request_hash", "diff"]).where("person_id", "=", personId).where("command_id", "=", commandId).executeTakeFirst();
 }
 
 export async function listChanges(db: Db, layoutId: string, where: { before?: number | undefined; after?: number | undefined; limit: number }) {

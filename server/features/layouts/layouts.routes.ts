@@ -6,9 +6,11 @@ import type { Layout } from "#core/layout/schema.ts";
 import type { Pool } from "../../compute/pool.ts";
 import type { Db } from "../../database/connection.ts";
 import { HttpFault, notFound } from "../../http/fault.ts";
-import { mount, SENT, type Mounted } from "../../http/mount.ts";
+import { mount, SENT, type Context, type Mounted } from "../../http/mount.ts";
 import { giveCommand } from "./give-command.ts";
 import * as layouts from "./layouts.repository.ts";
+
+type Creating = Pick<Context<{ buildId: string }, unknown, unknown>, "params" | "personId" | "write">;
 
 export function mountLayouts(mounted: Mounted, db: Db, pool: Pool): void {
   const summary = async (buildId: string, layoutId: string) => {
@@ -16,22 +18,20 @@ export function mountLayouts(mounted: Mounted, db: Db, pool: Pool): void {
     if (!found) throw notFound("layout");
     return found;
   };
-  const row = async (buildId: string, layoutId: string) => {
-    const found = await layouts.findLayoutRow(db, buildId, layoutId);
+  const row = async (from: Db, buildId: string, layoutId: string) => {
+    const found = await layouts.findLayoutRow(from, buildId, layoutId);
     if (!found) throw notFound("layout");
     return found;
   };
-  const create = async (buildId: string, personId: string, layout: Layout) => {
-    const id = await db.transaction().execute((tx) => layouts.insertLayout(tx, buildId, personId, layout));
-    return summary(buildId, id);
-  };
+  const create = async ({ params, personId, write }: Creating, layout: Layout) =>
+    summary(params.buildId, await write((tx) => layouts.insertLayout(tx, params.buildId, personId, layout)));
 
   mount(mounted, contract.listLayouts, async ({ params, query }) => ({ layouts: await layouts.listLayouts(db, params.buildId, query.archived === "yes") }));
-  mount(mounted, contract.createLayout, ({ params, personId, body }) => create(params.buildId, personId, emptyLayout(body.name)));
-  mount(mounted, contract.importLayout, async ({ params, personId, body }) => {
-    const parsed = await pool.run<ParsedLayout>({ kind: "parse", text: typeof body === "string" ? (body as string) : "" });
+  mount(mounted, contract.createLayout, (context) => create(context, emptyLayout(context.body.name)));
+  mount(mounted, contract.importLayout, async (context) => {
+    const parsed = await pool.run<ParsedLayout>({ kind: "parse", text: typeof context.body === "string" ? (context.body as string) : "" });
     if (!parsed.ok) throw new HttpFault("bad-input", parsed.faults.length === 1 ? `${parsed.faults[0]!.path}: ${parsed.faults[0]!.message}` : `The file has ${parsed.faults.length} faults.`, { fields: [...parsed.faults] });
-    return create(params.buildId, personId, parsed.layout);
+    return create(context, parsed.layout);
   });
   mount(mounted, contract.getLayout, async ({ params }) =>
     db.transaction().setIsolationLevel("repeatable read").execute(async (tx) => {
@@ -40,21 +40,24 @@ export function mountLayouts(mounted: Mounted, db: Db, pool: Pool): void {
       return { ...found, document: await layouts.findDocument(tx, params.layoutId) };
     }));
   mount(mounted, contract.exportLayout, async ({ params, response }) => {
-    await row(params.buildId, params.layoutId);
+    await row(db, params.buildId, params.layoutId);
     const document = await layouts.findDocument(db, params.layoutId);
     const name = document.name.toLowerCase().replace(/[^a-z0-9]+/g, "-").replace(/^-|-$/g, "").slice(0, 60) || "layout";
     response.setHeader("Content-Disposition", `attachment; filename="${name}.layout.json"`);
     response.type("application/json").send(exportLayout(document));
     return SENT;
   });
-  mount(mounted, contract.duplicateLayout, async ({ params, personId, body }) => {
-    await row(params.buildId, params.layoutId);
+  mount(mounted, contract.duplicateLayout, async (context) => {
+    const { params, body } = context;
+    await row(db, params.buildId, params.layoutId);
     const document = await layouts.findDocument(db, params.layoutId);
-    return create(params.buildId, personId, { ...document, name: body.name });
+    return create(context, { ...document, name: body.name });
   });
-  mount(mounted, contract.archiveLayout, async ({ params, body }) => {
-    await row(params.buildId, params.layoutId);
-    await layouts.updateArchived(db, params.layoutId, body.archived);
+  mount(mounted, contract.archiveLayout, async ({ params, body, write }) => {
+    await write(async (tx) => {
+      await row(tx, params.buildId, params.layoutId);
+      await layouts.updateArchived(tx, params.layoutId, body.archived);
+    });
     return summary(params.buildId, params.layoutId);
   });
   mount(mounted, contract.postCommand, async ({ params, personId, body }) => {
@@ -62,7 +65,7 @@ export function mountLayouts(mounted: Mounted, db: Db, pool: Pool): void {
     return { seq, diff: [...diff], replay };
   });
   mount(mounted, contract.listChanges, async ({ params, query }) => {
-    await row(params.buildId, params.layoutId);
+    await row(db, params.buildId, params.layoutId);
     const { rows, more } = await layouts.listChanges(db, params.layoutId, query);
     return {
       more,

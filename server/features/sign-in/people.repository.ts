@@ -1,3 +1,4 @@
+import { sql } from "kysely";
 import type { Person } from "#contracts/sign-in.contract.ts";
 import type { Db } from "../../database/connection.ts";
 
@@ -11,8 +12,10 @@ export function findPerson(db: Db, id: string): Promise<Person | undefined> {
   return db.selectFrom("person").select(PERSON).where("id", "=", id).executeTakeFirst();
 }
 
-export function findCredentials(db: Db, email: string): Promise<(Person & { password_hash: string }) | undefined> {
-  return db.selectFrom("person").select([...PERSON, "person.password_hash"]).where("email", "=", email.toLowerCase()).executeTakeFirst();
+/** Demo members only where they may sign in: their password is known to everybody. */
+export function findCredentials(db: Db, email: string, demoToo: boolean): Promise<(Person & { password_hash: string }) | undefined> {
+  return db.selectFrom("person").select([...PERSON, "person.password_hash"]).where("email", "=", email.toLowerCase())
+    .$if(!demoToo, (q) => q.where("demo_role", "is", null)).executeTakeFirst();
 }
 
 export function findDemoPerson(db: Db, email: string): Promise<Person | undefined> {
@@ -28,24 +31,28 @@ export async function insertSignIn(db: Db, personId: string): Promise<string> {
   return row.id;
 }
 
-/** The person of a sign-in that is neither ended nor past its lifetimes. */
-export function findLiveSignIn(db: Db, signInId: string): Promise<{ person_id: string; last_seen_at: Date } | undefined> {
+const hoursAgo = (hours: number) => sql<Date>`now() - make_interval(hours => ${hours})`;
+
+/** The person of a sign-in that is neither ended nor past its lifetimes, by the database's clock. */
+export function findLiveSignIn(db: Db, signInId: string, demoToo: boolean): Promise<{ person_id: string; last_seen_at: Date } | undefined> {
   return db
     .selectFrom("sign_in")
+    .innerJoin("person", "person.id", "sign_in.person_id")
     .select(["person_id", "last_seen_at"])
-    .where("id", "=", signInId)
+    .where("sign_in.id", "=", signInId)
+    .$if(!demoToo, (q) => q.where("demo_role", "is", null))
     .where("ended_at", "is", null)
-    .where((e) => e("created_at", ">", new Date(Date.now() - ABSOLUTE_LIFETIME_HOURS * 3_600_000)))
-    .where((e) => e("last_seen_at", ">", new Date(Date.now() - IDLE_LIFETIME_HOURS * 3_600_000)))
+    .where("sign_in.created_at", ">", hoursAgo(ABSOLUTE_LIFETIME_HOURS))
+    .where("last_seen_at", ">", hoursAgo(IDLE_LIFETIME_HOURS))
     .executeTakeFirst();
 }
 
 export async function touchSignIn(db: Db, signInId: string): Promise<void> {
-  await db.updateTable("sign_in").set({ last_seen_at: new Date() }).where("id", "=", signInId).where("ended_at", "is", null).execute();
+  await db.updateTable("sign_in").set({ last_seen_at: sql<Date>`now()` }).where("id", "=", signInId).where("ended_at", "is", null).execute();
 }
 
 export async function endSignIn(db: Db, signInId: string): Promise<void> {
-  await db.updateTable("sign_in").set({ ended_at: new Date() }).where("id", "=", signInId).where("ended_at", "is", null).execute();
+  await db.updateTable("sign_in").set({ ended_at: sql<Date>`now()` }).where("id", "=", signInId).where("ended_at", "is", null).execute();
 }
 
 export function updatePreferences(db: Db, id: string, changes: { units?: Person["units"] | undefined; theme?: Person["theme"] | undefined }): Promise<Person> {

@@ -1,5 +1,5 @@
 import type { Request, Response } from "express";
-import passport from "passport";
+import { Passport } from "passport";
 import { Strategy } from "passport-local";
 import type { RateLimiterAbstract } from "rate-limiter-flexible";
 import { getMe, setPreferences, signIn, signInDemo, signOut, type Person } from "#contracts/sign-in.contract.ts";
@@ -18,18 +18,21 @@ const DEMO_SAYS: Readonly<Record<string, string>> = {
 
 export interface SignInOptions {
   readonly production: boolean;
+  /** The session cookie as it is set, so that signing out can take it away. */
+  readonly cookie: { readonly name: string; readonly httpOnly: true; readonly sameSite: "lax"; readonly secure: boolean; readonly path: "/" };
   /** Tries by address and by where they come from, counted in PostgreSQL for all app processes. */
   readonly limits: { readonly byAddress: RateLimiterAbstract; readonly byOrigin: RateLimiterAbstract };
 }
 
-export function mountSignIn(mounted: Mounted, db: Db, { production, limits }: SignInOptions): void {
+export function mountSignIn(mounted: Mounted, db: Db, { production, cookie, limits }: SignInOptions): void {
   const strategy = new Strategy({ usernameField: "email", passwordField: "password" }, (email, password, done) => {
     void (async () => {
-      const person = await findCredentials(db, email);
+      const person = await findCredentials(db, email, !production);
       const right = await checkPassword(person?.password_hash ?? null, password);
       return right && person ? person : false;
     })().then((found) => done(null, found), done);
   });
+  const passport = new Passport();
   passport.use(strategy);
 
   mount(mounted, getMe, async ({ personId }) => {
@@ -43,7 +46,7 @@ export function mountSignIn(mounted: Mounted, db: Db, { production, limits }: Si
   mount(mounted, signIn, async ({ body, request, response }) => {
     await spend(limits.byOrigin, request.ip ?? "");
     await spend(limits.byAddress, body.email.toLowerCase());
-    const person = await authenticate(request, response);
+    const person = await authenticate(passport, request, response);
     await limits.byAddress.delete(body.email.toLowerCase());
     await begin(request, db, person.id);
     return { person };
@@ -59,7 +62,8 @@ export function mountSignIn(mounted: Mounted, db: Db, { production, limits }: Si
   mount(mounted, signOut, async ({ request, response }) => {
     await endSignIn(db, request.asker!.signInId);
     await new Promise<void>((resolve) => request.session.destroy(() => resolve()));
-    response.clearCookie(production && request.secure ? "__Host-handbreadth" : "handbreadth");
+    const { name, ...options } = cookie;
+    response.clearCookie(name, options);
     return { signedOut: true as const };
   });
 
@@ -76,7 +80,7 @@ async function spend(limit: RateLimiterAbstract, key: string): Promise<void> {
   }
 }
 
-function authenticate(request: Request, response: Response): Promise<Person> {
+function authenticate(passport: InstanceType<typeof Passport>, request: Request, response: Response): Promise<Person> {
   return new Promise((resolve, reject) => {
     const done = (error: unknown, found: (Person & { password_hash?: string }) | false) => {
       if (error instanceof TooManyChecks) return reject(new HttpFault("busy", "Many people are signing in. Try again in a moment.", { retryAfter: 2 }));
