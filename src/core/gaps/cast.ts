@@ -53,7 +53,7 @@ export function castOf(layout: Layout, before: Cast | null): Cast {
     const from: unknown[] = ["run", front, rear, run];
     if (run.carriedBy !== null) carriers(parts.get(run.carriedBy), from);
     for (const node of run.nodes) if (node.on !== undefined) carriers(parts.get(ownerOf(node.on)), from);
-    put(run.key, from, () => runThing(run, parts, chassis));
+    put(run.key, from, (old) => runThing(run, parts, chassis, old?.thing));
   }
   for (const shaft of layout.shafts) {
     if (shaft.diameter === undefined) continue;

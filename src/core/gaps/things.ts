@@ -1,3 +1,4 @@
+import type { Vec3 } from "../frames.ts";
 import { buildBody, type Body } from "../geometry/body.ts";
 import { partPieces, solidPieces } from "../geometry/solids.ts";
 import { cutTube, tubePath, tubePieces, type TubePath, type TubePiece } from "../geometry/tubes.ts";
@@ -44,6 +45,8 @@ export interface Thing extends RuleSide {
   readonly blocks: readonly Block[];
   /** Against these owners the blocks are others: stretches near clips and bound ends left out. */
   readonly against: ReadonlyMap<string, readonly Block[]>;
+  /** With a run: its pieces and where on the path they lie. */
+  readonly tubes?: readonly TubePiece[];
   /** What no pair of it covers. */
   readonly notCovered: readonly string[];
   /** Everywhere it may be: low x, y, z, high x, y, z, mm, by movement, tolerance and growth. */
@@ -114,9 +117,10 @@ export function shaftThing(shaft: Shaft, wheelChain: Chain | null): Thing {
 export const BOUND_DIAMETERS = 2;
 export const CLIP_REACH = 50;
 
-export function runThing(run: Run, parts: ReadonlyMap<string, Part>, chassis: Layout["chassis"]): Thing {
+/** @param before the same run as it was: stretches that a change leaves alone are the same pieces again, and bodies of nothing but those the same bodies */
+export function runThing(run: Run, parts: ReadonlyMap<string, Part>, chassis: Layout["chassis"], before?: Thing): Thing {
   const path = tubePath(run);
-  const tubes = tubePieces(path);
+  const tubes = keepAlike(tubePieces(path), before?.tubes ?? []);
   const growth = growthOf(run, path);
   const carrier = run.carriedBy === null ? undefined : parts.get(run.carriedBy);
   const own = runChain(run.key, run.movement, carrier ? chainOf(carrier, parts, chassis) : []);
@@ -164,10 +168,28 @@ export function runThing(run: Run, parts: ReadonlyMap<string, Part>, chassis: La
   return {
     key: run.key, name: run.name, is: "run", kind: run.kind, group: run.group, owner: run.key, generated: false, wheel: null,
     hot: run.heat?.surface !== undefined || run.nodes.some((node) => node.surface !== undefined), limited: run.heat?.limit !== undefined,
-    guessed: isGuess(run.source), plusMinus, blocks,
+    guessed: isGuess(run.source), plusMinus, blocks, tubes,
     against: exempt.size === 0 ? NO_EXEMPTIONS : new Map([...exempt].map(([owner, from]) => [owner, blocksOf(cutTube(tubes, ...stretchesNear(path, from)))] as const)),
     notCovered: growth.unknown ? ["growth"] : [], box: boxOf(blocks, plusMinus),
   };
+}
+
+/** New pieces, those that are equal to the old one at their place exchanged for it. */
+function keepAlike(tubes: readonly TubePiece[], before: readonly TubePiece[]): readonly TubePiece[] {
+  // Counted from either end: a bend that takes a piece more shifts what comes after it.
+  const shift = before.length - tubes.length;
+  return tubes.map((tube, i) => [before[i], before[i + shift]].find((old) => old !== undefined && alikeTubes(old, tube)) ?? tube);
+}
+
+function alikeTubes(a: TubePiece, b: TubePiece): boolean {
+  if (a.leg !== b.leg || a.from !== b.from || a.to !== b.to || a.nodes[0] !== b.nodes[0] || a.nodes[1] !== b.nodes[1]) return false;
+  const [p, q] = [a.piece, b.piece];
+  if (p.radius !== q.radius || p.form !== q.form || p.discs.length !== q.discs.length || p.points.length !== q.points.length) return false;
+  return p.points.every((v, i) => sameVec(v, q.points[i]!)) && p.discs.every((d, i) => sameVec(d.centre, q.discs[i]!.centre) && sameVec(d.u, q.discs[i]!.u) && sameVec(d.v, q.discs[i]!.v));
+}
+
+function sameVec(a: Vec3, b: Vec3): boolean {
+  return Object.is(a[0], b[0]) && Object.is(a[1], b[1]) && Object.is(a[2], b[2]);
 }
 
 /** Made when first asked for: a body is worth its building only where something is near. */

@@ -246,19 +246,32 @@ export interface Compiled {
   radius: number;
 }
 
+/** Pieces never change, and a pipe's are built into several bodies: one for each part that some of it is left out against. */
+const known = new WeakMap<Piece, Compiled>();
+
 /** @throws RangeError for a piece without points and discs, with a number that is not finite, or with a negative radius. */
 export function compilePiece(piece: Piece): Compiled {
-  return { ...compileCore(piece), radius: piece.radius };
+  let compiled = known.get(piece);
+  if (compiled === undefined) known.set(piece, (compiled = { ...compileCore(piece), radius: piece.radius }));
+  return compiled;
+}
+
+function requireFinite(v: Vec3): void {
+  if (!Number.isFinite(v[0]) || !Number.isFinite(v[1]) || !Number.isFinite(v[2])) {
+    throw new RangeError(`a piece has a coordinate that is not a finite number: ${v.join(", ")}`);
+  }
 }
 
 function compileCore(piece: Piece): Omit<Compiled, "radius"> {
-  const discs = piece.discs.filter((d) => !point(d));
-  const points = [...piece.points, ...piece.discs.filter(point).map((d) => d.centre)];
+  const flat = piece.discs.some(point);
+  const discs = flat ? piece.discs.filter((d) => !point(d)) : piece.discs;
+  const points = flat ? [...piece.points, ...piece.discs.filter(point).map((d) => d.centre)] : [...piece.points];
   if (points.length + discs.length === 0) throw new RangeError("a piece needs at least one point or disc");
-  for (const v of [...points, ...discs.flatMap((d) => [d.centre, d.u, d.v])]) {
-    if (!Number.isFinite(v[0]) || !Number.isFinite(v[1]) || !Number.isFinite(v[2])) {
-      throw new RangeError(`a piece has a coordinate that is not a finite number: ${v.join(", ")}`);
-    }
+  for (const p of points) requireFinite(p);
+  for (const d of discs) {
+    requireFinite(d.centre);
+    requireFinite(d.u);
+    requireFinite(d.v);
   }
   if (!(piece.radius >= 0) || !Number.isFinite(piece.radius)) {
     throw new RangeError(`a piece's radius must be zero or more, got ${piece.radius}`);

@@ -26,7 +26,7 @@ export function randomLayout(seed: number): Layout {
   const between = (low: number, high: number) => low + (high - low) * next();
   const pick = <T>(list: readonly T[]): T => list[Math.floor(next() * list.length)]!;
   const chance = (share: number) => next() < share;
-  const place = (): [number, number, number] => [between(1000, 1700), between(-350, 350), between(1800, 2300)];
+  const place = (): [number, number, number] => [between(1000, 1500), between(-250, 250), between(1800, 2150)];
   const axis = () => pick(["x", "y", "z"] as const);
   const turn = (): [number, number, number] => (chance(0.4) ? [0, 0, 0] : chance(0.3) ? [pick([0, 90, 180]), 0, pick([0, 90, 270])] : [between(-90, 90), between(-80, 80), between(-180, 180)]);
   const range = (most: number): [number, number] => [-between(0, most), between(0, most)];
