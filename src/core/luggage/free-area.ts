@@ -65,7 +65,7 @@ function chainAt(chain: readonly (readonly [number, number])[], middle: number, 
 
 /**
  * Area of `region` less the union of convex `obstacles`, mm2. Exact for straight-sided regions (strips between all corners; a strip in
- * which the order of the boundaries changes is halved until it does not, at most 14 times). Cost about corners x obstacles.
+ * which the order of the boundaries changes is halved until it does not, at most 14 times). Cost about corners x obstacles that overlap there.
  */
 export function freeArea(region: ScanRegion, obstacles: readonly (readonly (readonly [number, number])[])[]): number {
   if (!(region.to > region.from)) return 0;
@@ -78,52 +78,103 @@ export function freeArea(region: ScanRegion, obstacles: readonly (readonly (read
     chains.push(c);
     for (const p of polygon) if (p[0] > region.from && p[0] < region.to) breaks.push(p[0]);
   }
-  breaks.sort((a, b) => a - b);
+  breaks.sort((p, q) => p - q);
+  chains.sort((p, q) => p.from - q.from);
+  let active: Chains[] = [];
+  let next = 0;
   let area = 0;
   for (let i = 1; i < breaks.length; i++) {
     const a = breaks[i - 1]!;
     const b = breaks[i]!;
-    if (b - a > 1e-9) area += strip(region, chains, a, b, 0);
+    if (b - a <= 1e-9) continue;
+    // no corner lies inside the strip: a chain covers all of it or nothing
+    while (next < chains.length && chains[next]!.from < (a + b) / 2) active.push(chains[next++]!);
+    active = active.filter((chain) => chain.to > (a + b) / 2);
+    area += strip(region, active, a, b, 0);
   }
   return area;
 }
 
-/** One end of a strip: what lies free there, and a signature of the order of the boundaries. */
-function freeAt(region: ScanRegion, chains: readonly Chains[], middle: number, u: number, side: 1 | -1): { free: number; order: string } {
-  const open = region.stretchesAt(u, side);
-  const marks: { v: number; id: number }[] = [];
-  for (let i = 0; i < open.length; i++) marks.push({ v: open[i]!, id: i });
-  const blocks: [number, number][] = [];
-  chains.forEach((chain, index) => {
-    if (chain.from >= middle || chain.to <= middle) return;
-    const low = chainAt(chain.lower, middle, u);
-    const high = chainAt(chain.upper, middle, u);
-    blocks.push([low, high]);
-    marks.push({ v: low, id: 1000 + 2 * index }, { v: high, id: 1001 + 2 * index });
-  });
-  blocks.sort((a, b) => a[0] - b[0]);
-  let free = 0;
-  for (let i = 0; i + 1 < open.length; i += 2) {
-    let at = open[i]!;
-    const end = open[i + 1]!;
-    for (const [low, high] of blocks) {
-      if (low >= end) break;
-      if (high <= at) continue;
-      if (low > at) free += low - at;
-      at = Math.max(at, high);
-      if (at >= end) break;
-    }
-    if (at < end) free += end - at;
+/** Boundaries of a strip at one of its ends: the region's own, then low and high of each obstacle. Reused: nothing is allocated in the loop. */
+interface End {
+  open: Stretches;
+  values: Float64Array;
+}
+const ends: End[] = Array.from({ length: 30 }, () => ({ open: [], values: new Float64Array(64) }));
+let order = new Int32Array(64);
+let blocks = new Int32Array(64);
+
+function readEnd(end: End, region: ScanRegion, active: readonly Chains[], middle: number, u: number, side: 1 | -1): number {
+  end.open = region.stretchesAt(u, side);
+  const count = end.open.length + 2 * active.length;
+  if (end.values.length < count) end.values = new Float64Array(2 * count);
+  const { open, values } = end;
+  for (let i = 0; i < open.length; i++) values[i] = open[i]!;
+  for (let i = 0; i < active.length; i++) {
+    values[open.length + 2 * i] = chainAt(active[i]!.lower, middle, u);
+    values[open.length + 2 * i + 1] = chainAt(active[i]!.upper, middle, u);
   }
-  // boundaries within 1e-7 mm of each other count as level: coincident edges must not look like crossings
-  marks.sort((a, b) => Math.round(a.v * 1e7) - Math.round(b.v * 1e7) || a.id - b.id);
-  return { free, order: marks.map((m) => m.id).join() };
+  return count;
 }
 
-function strip(region: ScanRegion, chains: readonly Chains[], a: number, b: number, depth: number): number {
+/** Free length at one end: the open stretches less the obstacles, taken in order of their low boundary. */
+function freeLength(end: End, obstacles: number): number {
+  const { open, values } = end;
+  const base = open.length;
+  if (blocks.length < obstacles) blocks = new Int32Array(2 * obstacles);
+  for (let i = 0; i < obstacles; i++) {
+    let k = i;
+    const low = values[base + 2 * i]!;
+    while (k > 0 && values[base + 2 * blocks[k - 1]!]! > low) {
+      blocks[k] = blocks[k - 1]!;
+      k--;
+    }
+    blocks[k] = i;
+  }
+  let free = 0;
+  for (let i = 0; i + 1 < base; i += 2) {
+    let at = values[i]!;
+    const to = values[i + 1]!;
+    for (let k = 0; k < obstacles && at < to; k++) {
+      const low = values[base + 2 * blocks[k]!]!;
+      const high = values[base + 2 * blocks[k]! + 1]!;
+      if (low >= to) break;
+      if (high <= at) continue;
+      if (low > at) free += low - at;
+      at = high;
+    }
+    if (at < to) free += to - at;
+  }
+  return free;
+}
+
+/** True where two boundaries change places between the ends of a strip. Within 1e-7 mm they count as level: coincident edges must not look like crossings. */
+function crosses(a: End, b: End, count: number): boolean {
+  if (a.open.length !== b.open.length) return true;
+  if (order.length < count) order = new Int32Array(2 * count);
+  for (let i = 0; i < count; i++) {
+    let k = i;
+    const v = a.values[i]!;
+    const w = b.values[i]!;
+    while (k > 0) {
+      const other = order[k - 1]!;
+      const apart = a.values[other]! - v;
+      if (apart < -1e-7 || (apart <= 1e-7 && b.values[other]! <= w)) break;
+      order[k] = other;
+      k--;
+    }
+    order[k] = i;
+  }
+  for (let i = 1; i < count; i++) if (b.values[order[i]!]! < b.values[order[i - 1]!]! - 1e-7) return true;
+  return false;
+}
+
+function strip(region: ScanRegion, active: readonly Chains[], a: number, b: number, depth: number): number {
   const middle = (a + b) / 2;
-  const at = freeAt(region, chains, middle, a, 1);
-  const to = freeAt(region, chains, middle, b, -1);
-  if (at.order === to.order || depth >= 14) return ((at.free + to.free) / 2) * (b - a);
-  return strip(region, chains, a, middle, depth + 1) + strip(region, chains, middle, b, depth + 1);
+  const start = ends[2 * depth]!;
+  const end = ends[2 * depth + 1]!;
+  const count = readEnd(start, region, active, middle, a, 1);
+  readEnd(end, region, active, middle, b, -1);
+  if (depth >= 14 || !crosses(start, end, count)) return ((freeLength(start, active.length) + freeLength(end, active.length)) / 2) * (b - a);
+  return strip(region, active, a, middle, depth + 1) + strip(region, active, middle, b, depth + 1);
 }
