@@ -35,8 +35,10 @@ export function growPiece(piece: Piece, gap: number): GrownPiece {
   const radius = piece.radius + gap;
   const box = boxOf(piece, radius);
   const rounds = piece.points.length === 0 && (piece.discs.length === 2 || piece.discs.length === 4);
-  const sectionAt = rounds ? roundSection(piece.discs, radius) : piece.discs.length === 0 ? cornerSection(piece.points, radius) : (x: number) => pieceSection({ ...piece, radius }, "x", x, 0.05);
-  return { ...box, sectionAt };
+  const make = () => (rounds ? roundSection(piece.discs, radius) : piece.discs.length === 0 ? cornerSection(piece.points, radius) : (x: number) => pieceSection({ ...piece, radius }, "x", x, 0.05));
+  // most pieces of a car are nowhere near the space: the facets are made when they are first asked for
+  let made: ((x: number) => Vec2[]) | null = null;
+  return { ...box, sectionAt: (x) => (made ??= make())(x) };
 }
 
 /** Cylinders, cones, tubes (two discs) and ovals (four: two at either end): rings about each end, rounded outward by the radius. */
