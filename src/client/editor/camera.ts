@@ -17,7 +17,7 @@ export function toView(camera: Camera, view: View, px: number, py: number): [num
 }
 
 /** Zoom by a factor that keeps the place under the pointer; views that share an axis follow. */
-export function zoomAt(camera: Camera, view: View, px: number, py: number, factor: number, sizes: { readonly plan: number; readonly section: number }): Camera {
+export function zoomAt(camera: Camera, view: View, px: number, py: number, factor: number, sizes: { readonly plan: number; readonly section: number; readonly side?: number }): Camera {
   const scale = Math.min(8, Math.max(0.03, camera.scale * factor));
   const [u, v] = toView(camera, view, px, py);
   const at = (value: number, pixels: number, sign: 1 | -1) => value - (sign * pixels) / scale;
@@ -26,7 +26,7 @@ export function zoomAt(camera: Camera, view: View, px: number, py: number, facto
     scale,
     x: view === "rear" ? camera.x : at(u, px, 1),
     top: view === "plan" ? at(v, py, -1) : middle(camera.top, sizes.plan, -1),
-    high: view === "plan" ? camera.high : at(v, py, -1),
+    high: view === "plan" ? (sizes.side === undefined ? camera.high : middle(camera.high, sizes.side, -1)) : at(v, py, -1),
     across: view === "rear" ? at(u, px, 1) : middle(camera.across, sizes.section, 1),
   };
 }

@@ -1,7 +1,7 @@
 import { AXES, DIRECTION_WORDS, PROJECTION, type Vec3, type View } from "#core/frames.ts";
-import { multiplyPose, poseOf, turnOf } from "#core/geometry/turn.ts";
 import type { Command, ListName } from "#core/layout/commands.ts";
-import type { Layout, Part } from "#core/layout/schema.ts";
+import type { Layout } from "#core/layout/schema.ts";
+import { formatLengthWithUnit } from "#core/units/format-length.ts";
 import { parseLength, type LengthUnit } from "#core/units/parse-length.ts";
 import { shapesOf } from "./shapes.ts";
 
@@ -43,11 +43,28 @@ export function wordOf(direction: Vec3): string {
   return DIRECTION_WORDS[AXES[axis]!][direction[axis]! < 0 ? 0 : 1];
 }
 
+/** A displacement in the person's units: "rear 12.0 mm, up 4.0 mm". */
+export function moveWords(by: Vec3, units: LengthUnit): string {
+  const words = AXES.flatMap((axis, i) => (Math.abs(by[i]!) < 0.01 ? [] : [`${DIRECTION_WORDS[axis][by[i]! < 0 ? 0 : 1]} ${formatLengthWithUnit(Math.abs(by[i]!), units)}`]));
+  return words.length > 0 ? words.join(", ") : "where it was";
+}
+
 /** How far a key moves: what is typed, or one tape step. Null where what is typed is no length. */
 export function distanceOf(typed: string, unit: LengthUnit, step: number): number | null {
   if (typed.trim() === "") return step;
   const read = parseLength(typed, unit);
   return read.ok ? read.mm : null;
+}
+
+/** The command that moves what is chosen (or one node of it) by a vector; null where nothing of it can move. */
+export function moveCommand(layout: Layout, selection: readonly string[], node: string | null, by: Vec3): Command | null {
+  if (node !== null) {
+    const run = layout.runs.find((one) => one.key === selection[0]);
+    const at = run?.locked ? undefined : run?.nodes.find((one) => one.key === node)?.at;
+    return run && at ? { kind: "move-node", run: run.key, node, at: [at[0] + by[0], at[1] + by[1], at[2] + by[2]] } : null;
+  }
+  const items = movable(layout, selection);
+  return items.length > 0 ? { kind: "move", items, by: [by[0], by[1], by[2]] } : null;
 }
 
 /** Box of one thing in the car frame, from its outlines. */
@@ -85,15 +102,6 @@ export function nextFace(layout: Layout, keys: readonly string[], direction: Vec
     }
   }
   return best;
-}
-
-/** Turning a part in a view by an angle seen on the paper, anticlockwise: about the axis toward the reader, through its own origin. */
-export function turnInView(part: Part, view: View, anticlockwise: number): Command {
-  // seen from above and from behind, anticlockwise on paper is right-handed about up and rearward; from the left it is the other way about y
-  const turn: Vec3 = view === "plan" ? [0, 0, anticlockwise] : view === "side" ? [0, -anticlockwise, 0] : [anticlockwise, 0, 0];
-  const rotation = multiplyPose(poseOf({ at: [0, 0, 0], turn }), { rotation: poseOf(part).rotation, at: [0, 0, 0] }).rotation;
-  const round = (value: number) => Math.round(value * 1000) / 1000 + 0;
-  return { kind: "place", key: part.key, at: part.at, turn: turnOf(rotation).map(round) as [number, number, number] };
 }
 
 /** A free key like another: muffler-left-2, -3 … */
