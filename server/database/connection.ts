@@ -15,6 +15,8 @@ export function connect(url: string, log: (message: string) => void, max = 10): 
     idle_in_transaction_session_timeout: 15_000, application_name: "handbreadth",
   });
   pool.on("error", (error) => log(`database connection lost: ${error.message}`));
+  // one that is lost while it is lent out tells only its client; without a listener that would end the process. The query itself rejects too.
+  pool.on("connect", (client) => client.on("error", (error) => log(`database connection lost in use: ${error.message}`)));
   return { db: new Kysely<Database>({ dialect: new PostgresDialect({ pool }) }), pool };
 }
 

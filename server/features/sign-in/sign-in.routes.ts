@@ -61,6 +61,7 @@ export function mountSignIn(mounted: Mounted, db: Db, { production, cookie, limi
 
   mount(mounted, signOut, async ({ request, response }) => {
     await endSignIn(db, request.asker!.signInId);
+    request.log.info({ event: "signed-out", personId: request.asker!.personId });
     await new Promise<void>((resolve) => request.session.destroy(() => resolve()));
     const { name, ...options } = cookie;
     response.clearCookie(name, options);
@@ -98,5 +99,6 @@ async function begin(request: Request, db: Db, personId: string): Promise<void> 
   const signInId = await insertSignIn(db, personId);
   await new Promise<void>((resolve, reject) => request.session.regenerate((error: unknown) => (error ? reject(error instanceof Error ? error : new Error(String(error))) : resolve())));
   request.session.signInId = signInId;
+  request.log.info({ event: "signed-in", personId });
   await new Promise<void>((resolve, reject) => request.session.save((error: unknown) => (error ? reject(error instanceof Error ? error : new Error(String(error))) : resolve())));
 }
