@@ -171,6 +171,8 @@ export interface TubePiece {
   readonly to: number;
   /** Centre line, for drawing and for cutting. */
   readonly line: readonly [Vec3, Vec3];
+  /** With a chord of a bend: which way the arc itself runs at either end, so that it is cut square to the arc. */
+  readonly tangents?: readonly [Vec3, Vec3];
 }
 
 /** One vertex of a leg's chord line: place, normal of the plane the tube is cut by there, and place along the leg. */
@@ -178,6 +180,8 @@ interface Station {
   readonly at: Vec3;
   readonly normal: Vec3;
   readonly along: number;
+  /** Within a bend: the way the arc runs there, in the leg's direction of travel. */
+  readonly tangent?: Vec3;
 }
 
 /**
@@ -186,6 +190,7 @@ interface Station {
  */
 export function tubePieces(path: TubePath, chordError = CHORD_ERROR): TubePiece[] {
   const stations: Station[][] = path.legs.map(() => []);
+  const straights: number[] = path.legs.map(() => 0);
   const startCaps = path.legs.map(() => null as Station[] | null);
   const endCaps = path.legs.map(() => null as Station[] | null);
   for (const bend of path.bends) {
@@ -200,6 +205,7 @@ export function tubePieces(path: TubePath, chordError = CHORD_ERROR): TubePiece[
     const start = startCaps[i] ?? [{ at: from, normal: leg.direction, along: 0 }];
     const end = endCaps[i] ?? [{ at: to, normal: leg.direction, along: leg.length }];
     stations[i] = [...start, ...end];
+    straights[i] = start.length - 1;
   });
   const out: TubePiece[] = [];
   path.legs.forEach((leg, i) => {
@@ -209,7 +215,8 @@ export function tubePieces(path: TubePath, chordError = CHORD_ERROR): TubePiece[
       const a = list[k]!;
       const b = list[k + 1]!;
       if (Math.hypot(b.at[0] - a.at[0], b.at[1] - a.at[1], b.at[2] - a.at[2]) < 1e-9) continue;
-      out.push({ piece: mitredTube(a, b, leg.diameter / 2), leg: i, nodes: [leg.from, leg.to], from: a.along, to: b.along, line: [a.at, b.at] });
+      const tangents = k !== straights[i] && a.tangent && b.tangent ? { tangents: [a.tangent, b.tangent] as const } : {};
+      out.push({ piece: mitredTube(a, b, leg.diameter / 2), leg: i, nodes: [leg.from, leg.to], from: a.along, to: b.along, line: [a.at, b.at], ...tangents });
     }
   });
   for (const [key, node] of path.nodes) {
@@ -238,7 +245,7 @@ function bendStations(path: TubePath, bend: TubeBend, chordError: number): [Stat
   const placeOut = (fromMiddle: number) => (forwardOut ? fromMiddle : path.legs[j]!.length - fromMiddle);
   const middleNormal = unit([into[0] + out[0], into[1] + out[1], into[2] + out[2]]);
 
-  const vertices: { at: Vec3; normal: Vec3; angle: number }[] = [];
+  const vertices: { at: Vec3; normal: Vec3; angle: number; tangent?: Vec3 }[] = [];
   const lead = r > 0 ? Math.acos(r / (r + chordError)) : Infinity;
   if (2 * lead >= angle) {
     vertices.push({ at: node, normal: middleNormal, angle: angle / 2 });
@@ -254,11 +261,9 @@ function bendStations(path: TubePath, bend: TubeBend, chordError: number): [Stat
     for (let k = 0; k <= chords; k++) {
       const a = lead + ((angle - 2 * lead) * k) / chords;
       const [s, c] = [Math.sin(a), Math.cos(a)];
-      vertices.push({
-        at: [0, 1, 2].map((m) => centre[m]! + ring * (s * into[m]! - c * inward[m]!)) as unknown as Vec3,
-        normal: [0, 1, 2].map((m) => c * into[m]! + s * inward[m]!) as unknown as Vec3,
-        angle: a,
-      });
+      const tangent: Vec3 = [c * into[0] + s * inward[0], c * into[1] + s * inward[1], c * into[2] + s * inward[2]];
+      const onRing = (m: 0 | 1 | 2): number => centre[m] + ring * (s * into[m] - c * inward[m]);
+      vertices.push({ at: [onRing(0), onRing(1), onRing(2)], normal: tangent, tangent, angle: a });
     }
     // the first and last chords meet the straights at an angle of their own: their mitre planes bisect it
     const bisect = (k: number, before: Vec3, after: Vec3) => {
@@ -272,8 +277,9 @@ function bendStations(path: TubePath, bend: TubeBend, chordError: number): [Stat
   const place = (v: { angle: number }, index: number) =>
     vertices.length > 1 && (index === 0 || index === vertices.length - 1) ? r * (middle - Math.tan(lead)) : r * Math.abs(middle - v.angle);
   const placed = vertices.map((v, index) => ({ ...v, fromMiddle: place(v, index) }));
-  const first = placed.filter((v) => v.angle <= middle + 1e-12).map((v) => ({ at: v.at, normal: v.normal, along: placeIn(v.fromMiddle) }));
-  const second = placed.filter((v) => v.angle >= middle - 1e-12).map((v) => ({ at: v.at, normal: v.normal, along: placeOut(v.fromMiddle) }));
+  const station = (v: (typeof placed)[number], along: number): Station => ({ at: v.at, normal: v.normal, along, ...(v.tangent ? { tangent: v.tangent } : {}) });
+  const first = placed.filter((v) => v.angle <= middle + 1e-12).map((v) => station(v, placeIn(v.fromMiddle)));
+  const second = placed.filter((v) => v.angle >= middle - 1e-12).map((v) => station(v, placeOut(v.fromMiddle)));
   if (!forwardIn) first.reverse();
   if (!forwardOut) second.reverse();
   return [first, second];
@@ -322,9 +328,17 @@ function shortened(tube: TubePiece, low: number, high: number): TubePiece {
   const [a, b] = [at(low), at(high)];
   const [d0, d1] = tube.piece.discs as [Disc, Disc];
   const direction = unit(sub(tube.line[1], tube.line[0]));
-  const squareOf = (disc: Disc, centre: Vec3): Disc => ({ centre, u: onSquare(disc.u, direction), v: onSquare(disc.v, direction) });
-  const start = low <= tube.from + 1e-9 ? d0 : squareOf(d0, a);
-  const end = high >= tube.to - 1e-9 ? d1 : squareOf(d1, b);
+  // square to the path: to the chord on a straight, to the arc within a bend
+  const squareOf = (disc: Disc, centre: Vec3, along: number): Disc => {
+    const square = { centre, u: onSquare(disc.u, direction), v: onSquare(disc.v, direction) };
+    if (!tube.tangents) return square;
+    const share = (along - tube.from) / whole;
+    const [t0, t1] = tube.tangents;
+    const normal = unit([t0[0] + (t1[0] - t0[0]) * share, t0[1] + (t1[1] - t0[1]) * share, t0[2] + (t1[2] - t0[2]) * share]);
+    return { centre, u: onPlane(square.u, direction, normal), v: onPlane(square.v, direction, normal) };
+  };
+  const start = low <= tube.from + 1e-9 ? d0 : squareOf(d0, a, low);
+  const end = high >= tube.to - 1e-9 ? d1 : squareOf(d1, b, high);
   return { ...tube, from: low, to: high, line: [a, b], piece: { ...tube.piece, discs: [start, end], form: "tube" } };
 }
 
