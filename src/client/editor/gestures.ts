@@ -219,14 +219,14 @@ export function createGestures(hands: () => HandsContext) {
     if (g.node !== null && !free) {
       const at = layout.runs.find((one) => one.key === selection[0])?.nodes.find((one) => one.key === g.node)?.at as Vec3 | undefined;
       const others = { ...layout, runs: layout.runs.filter((one) => one.key !== selection[0]) };
-      const caught = at && snapPoint(others, shapesOf(others, view), exactPoints(others, (part, local) => applyPose(poseOf(part), local)), view, at[u] + by[u], at[v] + by[v], 6 / camera.scale);
+      const caught = at && snapPoint(others, shapesOf(others, view), exactPoints(others, (part, local) => applyPose(poseOf(part), local)), view, at[u] + by[u], at[v] + by[v], Math.min(15, 6 / camera.scale));
       if (at && caught?.name) {
         [by[u], by[v]] = [caught.at[0] - at[u], caught.at[1] - at[v]];
         if (caught.depth !== null) by[depth] = caught.depth - at[depth];
         witnesses = [{ axis: u, at: caught.at[0], name: caught.name }, { axis: v, at: caught.at[1], name: "" }];
       }
     } else if (g.box && !free) {
-      const snapped = snapMove(layout, shapesOf(layout, view).filter((shape) => !state().hidden.has(shape.key)), new Set(selection), view, g.box, by[u], by[v], 5 / camera.scale);
+      const snapped = snapMove(layout, shapesOf(layout, view).filter((shape) => !state().hidden.has(shape.key)), new Set(selection), view, g.box, by[u], by[v], Math.min(12, 5 / camera.scale));
       [by[u], by[v]] = [snapped.du, snapped.dv];
       witnesses = snapped.witnesses;
     }

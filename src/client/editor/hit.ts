@@ -26,12 +26,12 @@ export function nearLine(line: ArrayLike<number>, u: number, v: number): number 
 
 const isTube = (shape: Shape) => shape.list === "runs" || shape.list === "shafts";
 
-/** Is a place on a thing? Within `slack` mm of a run's centre line counts. */
+/** Is a place on a thing? A run's line is as thick as the run, and never thinner than `slack` mm to either side. */
 export function hits(shape: Shape, u: number, v: number, slack: number): boolean {
   const { box } = shape;
   if (u < box[0] - slack || u > box[2] + slack || v < box[1] - slack || v > box[3] + slack) return false;
   const [du, dv] = shape.shift;
-  return shape.loops.some((loop) => insideLoop(loop, u - du, v - dv)) || (isTube(shape) && shape.lines.some((line) => nearLine(line, u - du, v - dv) < slack * slack));
+  return shape.loops.some((loop) => insideLoop(loop, u - du, v - dv)) || shape.lines.some((line, i) => nearLine(line, u - du, v - dv) <= Math.max(slack, shape.widths[i]! / 2) ** 2);
 }
 
 /** Everything under a place, what a pointer means first: runs before parts (they are thin and lie on top of much), then the smaller, then the nearer. */

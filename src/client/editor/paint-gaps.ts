@@ -14,6 +14,8 @@ export interface Balloon {
 export const balloonId = ({ gap }: Balloon): string => `${gap.a}|${gap.b}`;
 const HALF_HEIGHT = 10;
 const halfWidth = (number: number): number => (number > 99 ? 25 : number > 9 ? 21.5 : 18);
+/** Room for a distance beside the balloon, pixels: of what is framed or in the hand. */
+const tail = ({ gap, framed, inHand }: Balloon): number => (framed || inHand ? gap.distance.toFixed(1).length * 7.3 + 8 : 0);
 
 /** Rows that show in the views: what is not in order, what is framed, what is near what is chosen, worst first. */
 export function balloonsFor(gaps: readonly Gap[], pair: string | null, chosen: ReadonlySet<string>, inHand: ReadonlySet<string>): Balloon[] {
@@ -23,10 +25,10 @@ export function balloonsFor(gaps: readonly Gap[], pair: string | null, chosen: R
   gaps.forEach((gap, i) => {
     const [a, b] = [owner(gap.a), owner(gap.b)];
     const framed = pair === `${gap.a}|${gap.b}`;
-    const held = inHand.has(a) !== inHand.has(b);
     const bad = gap.verdict === "touch" || gap.verdict === "rub" || gap.verdict === "short";
-    const mine = chosen.has(a) || chosen.has(b) || held;
-    const shows = framed || (bad && out.length < 24) || (mine && near < (held ? 3 : 4));
+    const mine = chosen.has(a) !== chosen.has(b);
+    const held = mine && inHand.size > 0;
+    const shows = framed || (mine ? near < (held ? 3 : 4) || (bad && !held) : bad && out.length < (inHand.size > 0 ? 10 : 24));
     if (mine && shows) near++;
     if (shows) out.push({ number: i + 1, gap, framed, inHand: held });
   });
@@ -39,7 +41,7 @@ export function wantingOf(sheet: Sheet, balloon: Balloon): Wanting | null {
   const { pointA, pointB } = balloon.gap;
   const [x, y] = at(sheet, 0.5 * (pointA[u] + pointB[u]), 0.5 * (pointA[v] + pointB[v]));
   if (x < -30 || x > sheet.width + 30 || y < -30 || y > sheet.height + 30) return null;
-  return { id: balloonId(balloon), x, y, halfWidth: halfWidth(balloon.number), halfHeight: HALF_HEIGHT };
+  return { id: balloonId(balloon), x, y, halfWidth: halfWidth(balloon.number) + tail(balloon) / 2, halfHeight: HALF_HEIGHT };
 }
 
 /** One mark for each verdict, in a square of 16: as in the ledger. */
@@ -68,7 +70,7 @@ export function paintBalloons(sheet: Sheet, balloons: readonly Balloon[], spots:
     ctx.strokeStyle = ink;
     ctx.beginPath();
     ctx.moveTo(wanting.x, wanting.y);
-    ctx.lineTo(x, y);
+    ctx.lineTo(x - tail(balloon) / 2, y);
     ctx.lineWidth = 0.9;
     ctx.stroke();
     ctx.beginPath();
@@ -88,7 +90,7 @@ export function paintBalloons(sheet: Sheet, balloons: readonly Balloon[], spots:
       ctx.lineWidth = 1;
       ctx.stroke();
     }
-    paintBalloon(sheet, balloon, x, y, wanting.halfWidth, ink);
+    paintBalloon(sheet, balloon, x - tail(balloon) / 2, y, halfWidth(balloon.number), ink);
   }
 }
 
@@ -115,8 +117,7 @@ function paintBalloon(sheet: Sheet, { number, gap, framed, inHand }: Balloon, x:
     const text = gap.distance.toFixed(1);
     ctx.font = numberFont(12);
     const w = ctx.measureText(text).width;
-    const right = x + half + w + 10 < sheet.width;
-    const left = right ? x + half + 4 : x - half - w - 8;
+    const left = x + half + 3;
     ctx.fillStyle = inks.film;
     ctx.globalAlpha = 0.92;
     ctx.fillRect(left, y - 8, w + 4, 16);

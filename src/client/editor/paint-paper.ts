@@ -87,12 +87,13 @@ function paintDatums(sheet: Sheet, layout: Layout, units: LengthUnit): void {
       const fits = [text, line.name].find((one) => ctx.measureText(one).width + 6 < room);
       if (fits) ctx.fillText(fits, x + 5, DATUM_STRIP - 8);
     });
-  } else {
-    for (const line of lines) {
-      if (line.axis !== v) continue;
-      const [, y] = at(sheet, 0, line.at);
-      if (y > 40 && y < height - 6) ctx.fillText(line.name, 12, y - 8);
-    }
+  }
+  let above = -Infinity;
+  for (const line of lines.filter((one) => one.axis === v).sort((a, b) => b.at - a.at)) {
+    const [, y] = at(sheet, 0, line.at);
+    if (y < 70 || y > height - 6 || y - above < 16) continue;
+    above = y;
+    ctx.fillText(line.name, 12, y - 8);
   }
   ctx.textBaseline = "alphabetic";
 }

@@ -1,7 +1,7 @@
-import { at, DASHED, DOUBLE_CHAIN, inMillimetres, pathOf, type Sheet } from "./sheet.ts";
+import { at, DASHED, DOUBLE_CHAIN, inMillimetres, lineOf, pathOf, type Sheet } from "./sheet.ts";
 import type { Cut, Shape } from "./shapes.ts";
 
-const tube = (shape: { readonly list: string }): boolean => shape.list === "runs" || shape.list === "shafts";
+const tube = (shape: Shape): boolean => shape.lines.length > 0;
 const wire = (kind: string): boolean => kind === "harness" || kind === "cable";
 
 /** Is any of a thing on the paper that shows? */
@@ -52,9 +52,12 @@ function paintShape(sheet: Sheet, shape: Shape, chosen: boolean, hovered: boolea
       ctx.stroke(outline);
       return;
     }
-    const thin = tube(shape);
-    const fill = shape.hot ? inks.hotFill : thin ? (wire(shape.kind) ? inks.loom : inks.lit) : chosen ? inks.lit : inks.part;
-    const width = thin ? (chosen ? 2.2 : hovered ? 1.7 : 0.9) : chosen ? 2.2 : hovered ? 1.9 : 1.15;
+    if (tube(shape)) {
+      paintTube(ctx, px, sheet, shape, chosen ? 2.2 : hovered ? 1.7 : 0.9);
+      return;
+    }
+    const fill = shape.hot ? inks.hotFill : chosen ? inks.lit : inks.part;
+    const width = chosen ? 2.2 : hovered ? 1.9 : 1.15;
     if (shape.guessed) ctx.setLineDash(DASHED.map((d) => d * px));
     ctx.strokeStyle = inks.ink;
     ctx.lineWidth = 2 * width * px;
@@ -62,15 +65,29 @@ function paintShape(sheet: Sheet, shape: Shape, chosen: boolean, hovered: boolea
     ctx.setLineDash([]);
     ctx.fillStyle = fill;
     ctx.fill(outline);
-    if (chosen && !thin) doubleOutline(ctx, px, outline, inks.ink, fill);
-    if (thin && !wire(shape.kind) && sheet.camera.scale > 0.1) {
-      ctx.setLineDash([10 * px, 3 * px, 2 * px, 3 * px]);
-      ctx.strokeStyle = shape.hot ? inks.heat : inks.pencil;
-      ctx.lineWidth = 0.7 * px;
-      ctx.stroke(pathOf(shape.lines, false));
-      ctx.setLineDash([]);
-    }
+    if (chosen) doubleOutline(ctx, px, outline, inks.ink, fill);
   });
+}
+
+/** A run or shaft: its lines as wide as it is, ink under filling; a chain line along the middle of what is hollow. */
+function paintTube(ctx: CanvasRenderingContext2D, px: number, sheet: Sheet, shape: Shape, edge: number): void {
+  const { inks } = sheet;
+  const solid = wire(shape.kind);
+  ctx.lineJoin = "miter";
+  const passes: { ink: string; more: number }[] = [{ ink: inks.ink, more: 2 * edge * px }, { ink: shape.hot ? inks.hotFill : solid ? inks.loom : inks.lit, more: 0 }];
+  for (const { ink, more } of passes) {
+    ctx.strokeStyle = ink;
+    shape.lines.forEach((line, i) => {
+      ctx.lineWidth = Math.max(shape.widths[i]!, 0.8 * px) + more;
+      ctx.stroke(lineOf(line));
+    });
+  }
+  if (solid || sheet.camera.scale <= 0.1) return;
+  ctx.setLineDash([10 * px, 3 * px, 2 * px, 3 * px]);
+  ctx.strokeStyle = shape.hot ? inks.heat : inks.pencil;
+  ctx.lineWidth = 0.7 * px;
+  for (const line of shape.lines) ctx.stroke(lineOf(line));
+  ctx.setLineDash([]);
 }
 
 /** A second line inside the first. */

@@ -42,6 +42,7 @@ export function createPainter(input: () => PaneInput) {
   let ink: InkMap | null = null;
   let cuts: { layout: Layout; station: number; cuts: Cut[] } | null = null;
   let stance: { layout: Layout; lines: StanceLine[] } | null = null;
+  let held: { still: Layout; document: Layout; keys: ReadonlySet<string> } | null = null;
 
   const sheet = (ctx: CanvasRenderingContext2D): Sheet => {
     const { view, width, height, inks } = input();
@@ -51,11 +52,13 @@ export function createPainter(input: () => PaneInput) {
   const inHand = (): ReadonlySet<string> => {
     const { still, shown } = input();
     if (!shown.previewing || shown.document === still) return NONE;
+    if (held?.still === still && held.document === shown.document) return held.keys;
     const keys = new Set<string>();
     for (const list of ["parts", "runs", "shafts", "spaces", "glass", "eyes"] as const) {
       const before = new Map<string, unknown>(still[list].map((item) => [item.key, item]));
       for (const item of shown.document[list]) if (before.get(item.key) !== item) keys.add(item.key);
     }
+    held = { still, document: shown.document, keys };
     return keys;
   };
   const shownCuts = (): Cut[] => {
@@ -64,11 +67,16 @@ export function createPainter(input: () => PaneInput) {
     if (cuts?.layout !== shown.document || cuts.station !== station) cuts = { layout: shown.document, station, cuts: cutsAt(shown.document, station) };
     return cuts.cuts;
   };
+  const measureLines = (layout: Layout): void => {
+    stance = { layout, lines: stanceLines(measureStance(layout), layout) };
+  };
   const shownStance = (): StanceLine[] => {
     const { shown, view } = input();
     if (view !== "side") return [];
-    if (stance?.layout !== shown.document) stance = { layout: shown.document, lines: stanceLines(measureStance(shown.document), shown.document) };
-    return stance.lines;
+    // while something is in the hand the stance follows in the pauses: it looks at everything there is
+    if (stance && shown.previewing) return stance.lines;
+    if (stance?.layout !== shown.document) measureLines(shown.document);
+    return stance!.lines;
   };
   /** The section shows what it cuts, and the tyres of the nearer axle behind it. */
   const behindTheCut = (all: readonly Shape[], layout: Layout, station: number): Shape[] =>
@@ -101,6 +109,7 @@ export function createPainter(input: () => PaneInput) {
       const [du, dv] = shape.shift;
       const { scale } = page.camera;
       const [left, top] = at(page, du, dv);
+      for (const line of shape.lines) for (let i = 2; i < line.length; i += 2) inkLine(map, left + line[i - 2]! * scale, top - line[i - 1]! * scale, left + line[i]! * scale, top - line[i + 1]! * scale);
       for (const loop of shape.loops) {
         for (let i = 0, j = loop.length - 2; i < loop.length; j = i, i += 2) inkLine(map, left + loop[j]! * scale, top - loop[j + 1]! * scale, left + loop[i]! * scale, top - loop[i + 1]! * scale);
       }
@@ -182,6 +191,13 @@ export function createPainter(input: () => PaneInput) {
       const handle = this.handle();
       if (handle) paintHandle(page, handle.x, handle.y, handle.corner);
     },
+    /** Measures the stance of what is in the hand. True where its lines have to be drawn again. */
+    followStance(): boolean {
+      const { shown, view } = input();
+      if (view !== "side" || !shown.previewing || stance?.layout === shown.document) return false;
+      measureLines(shown.document);
+      return true;
+    },
     /** What the change in the hand replaces: the still film leaves it out. */
     held: (): string => [...inHand()].join(),
     /** Looks again for the best spots of all balloons: when the paper has come to rest. True where any moved. */
@@ -231,6 +247,13 @@ function outlineOnly(sheet: Sheet, shape: Shape): void {
       else ctx.lineTo(px, py);
     }
     ctx.closePath();
+  }
+  for (const line of shape.lines) {
+    for (let i = 0; i < line.length; i += 2) {
+      const [px, py] = [x + line[i]! * camera.scale, y - line[i + 1]! * camera.scale];
+      if (i === 0) ctx.moveTo(px, py);
+      else ctx.lineTo(px, py);
+    }
   }
   ctx.setLineDash([1, 3]);
   ctx.strokeStyle = inks.ink;

@@ -16,8 +16,10 @@ export type FlatLoop = Float64Array;
 /** Outlines before they are shifted to their place: they change when a thing turns, not when it moves along. */
 interface Flat {
   readonly loops: readonly FlatLoop[];
-  /** Runs and shafts: centre line through the bends, one for each leg. */
+  /** Runs and shafts have no loops: centre lines through the bends, legs of one thickness in one, drawn as wide as they are. */
   readonly lines: readonly FlatLoop[];
+  /** Outer diameter of each line, mm. */
+  readonly widths: readonly number[];
   /** Outlines of room that must stay free. */
   readonly rooms: readonly FlatLoop[];
   readonly nearness: number;
@@ -49,6 +51,7 @@ interface Solid {
   readonly pieces: readonly Piece[];
   readonly rooms: readonly Piece[];
   readonly lines: readonly (readonly Vec3[])[];
+  readonly widths: readonly number[];
   readonly views: Partial<Record<View, Flat>>;
   readonly roomFor?: Part["roomFor"];
 }
@@ -65,7 +68,7 @@ function partSolid(part: Part): Solid {
   if (known && known.roomFor === part.roomFor) return known;
   if (byTurn.size > 60) byTurn.clear();
   const pose = poseOf({ at: [0, 0, 0], turn: part.turn });
-  let made: Solid = { pieces: [], rooms: [], lines: [], views: {}, roomFor: part.roomFor };
+  let made: Solid = { pieces: [], rooms: [], lines: [], widths: [], views: {}, roomFor: part.roomFor };
   try {
     made = { ...made, pieces: partPieces(part).map((piece) => placePiece(piece, pose)), rooms: part.roomFor.flatMap((room) => room.solids.flatMap(solidPieces)).map((piece) => placePiece(piece, pose)) };
   } catch (error) {
@@ -81,31 +84,54 @@ function tubeSolid(item: Run | Shaft): Solid {
   const input = "nodes" in item ? item : { diameter: item.diameter ?? 1, bendRadius: 0, nodes: [{ key: "a", at: item.inboard }, { key: "b", at: item.outboard }], legs: [] };
   const path = tubePath(input);
   const tubes = tubePieces(path, TUBE_ERROR);
-  const lines = path.legs.map((_, leg) => {
-    const own = tubes.filter((tube) => tube.leg === leg);
-    return own.length === 0 ? [] : [own[0]!.line[0], ...own.map((tube) => tube.line[1])];
-  });
-  const made = { pieces: tubes.map((tube) => tube.piece), rooms: [], lines, views: {} };
+  const { lines, widths } = chains(path.legs.map((leg, i) => {
+    const own = tubes.filter((tube) => tube.leg === i);
+    return { line: own.length === 0 ? [] : [own[0]!.line[0], ...own.map((tube) => tube.line[1])], width: leg.diameter };
+  }));
+  const made = { pieces: tubes.map((tube) => tube.piece), rooms: [], lines, widths, views: {} };
   tubeSolids.set(item, made);
   return made;
+}
+
+/** Legs that go on where the one before ended, at the same thickness, become one line: its corners are mitres. */
+function chains(legs: readonly { readonly line: readonly Vec3[]; readonly width: number }[]): { lines: Vec3[][]; widths: number[] } {
+  const lines: Vec3[][] = [];
+  const widths: number[] = [];
+  for (const { line, width } of legs) {
+    const before = lines[lines.length - 1];
+    const end = before?.[before.length - 1];
+    const start = line[0];
+    if (!start) continue;
+    if (before && end && widths[widths.length - 1] === width && Math.hypot(end[0] - start[0], end[1] - start[1], end[2] - start[2]) < 0.5) before.push(...line.slice(1));
+    else {
+      lines.push([...line]);
+      widths.push(width);
+    }
+  }
+  return { lines, widths };
 }
 
 function flatOf(solid: Solid, view: View, joined: boolean): Flat {
   const known = solid.views[view];
   if (known) return known;
   const { u, v } = PROJECTION[view];
-  const loops = (joined && solid.pieces.length > 1 ? silhouette(solid.pieces, view, CURVE_ERROR) : solid.pieces.map((piece) => outlineOfPiece(piece, view, CURVE_ERROR))).map(flat).filter((loop) => loop.length >= 6);
+  const thin = solid.lines.length > 0;
+  const outlines = thin ? [] : joined && solid.pieces.length > 1 ? silhouette(solid.pieces, view, CURVE_ERROR) : solid.pieces.map((piece) => outlineOfPiece(piece, view, CURVE_ERROR));
+  const loops = outlines.map(flat).filter((loop) => loop.length >= 6);
+  const lines = solid.lines.map((line) => flat(line.map((p) => [p[u], p[v]] as const)));
   const box: [number, number, number, number] = [Infinity, Infinity, -Infinity, -Infinity];
-  for (const loop of loops) {
+  const take = (loop: FlatLoop, radius: number) => {
     for (let i = 0; i < loop.length; i += 2) {
-      box[0] = Math.min(box[0], loop[i]!);
-      box[1] = Math.min(box[1], loop[i + 1]!);
-      box[2] = Math.max(box[2], loop[i]!);
-      box[3] = Math.max(box[3], loop[i + 1]!);
+      box[0] = Math.min(box[0], loop[i]! - radius);
+      box[1] = Math.min(box[1], loop[i + 1]! - radius);
+      box[2] = Math.max(box[2], loop[i]! + radius);
+      box[3] = Math.max(box[3], loop[i + 1]! + radius);
     }
-  }
+  };
+  for (const loop of loops) take(loop, 0);
+  lines.forEach((line, i) => take(line, solid.widths[i]! / 2));
   const made: Flat = {
-    loops, box, nearness: nearnessOf(solid.pieces, view), lines: solid.lines.map((line) => flat(line.map((p) => [p[u], p[v]] as const))),
+    loops, box, lines, widths: solid.widths, nearness: nearnessOf(solid.pieces, view),
     rooms: (solid.rooms.length > 1 ? silhouette(solid.rooms, view, 1) : solid.rooms.map((piece) => outlineOfPiece(piece, view, 1))).map(flat),
   };
   solid.views[view] = made;
@@ -144,8 +170,16 @@ function tyresOf(layout: Layout): Part[] {
   return made;
 }
 
+const drawn = new WeakMap<Layout, Partial<Record<View, readonly Shape[]>>>();
+
 /** Everything solid in a view, farthest first. Unchanged items cost nothing. */
-export function shapesOf(layout: Layout, view: View): Shape[] {
+export function shapesOf(layout: Layout, view: View): readonly Shape[] {
+  let views = drawn.get(layout);
+  if (!views) drawn.set(layout, (views = {}));
+  return (views[view] ??= allShapes(layout, view));
+}
+
+function allShapes(layout: Layout, view: View): Shape[] {
   const all = [
     ...tyresOf(layout).map((tyre) => shapeOf(tyre, "tyres", view)),
     ...layout.parts.map((part) => shapeOf(part, "parts", view)),
@@ -153,6 +187,27 @@ export function shapesOf(layout: Layout, view: View): Shape[] {
     ...layout.shafts.map((shaft) => shapeOf(shaft, "shafts", view)),
   ];
   return all.sort((a, b) => a.nearness - b.nearness);
+}
+
+const reaches = new WeakMap<Solid, Float64Array>();
+
+/** From where to where each piece reaches along x, mm: two numbers a piece, a little generous. */
+function reachesOf(solid: Solid): Float64Array {
+  const known = reaches.get(solid);
+  if (known) return known;
+  const out = new Float64Array(2 * solid.pieces.length);
+  solid.pieces.forEach((piece, i) => {
+    let [low, high] = [Infinity, -Infinity];
+    for (const point of piece.points) [low, high] = [Math.min(low, point[0]), Math.max(high, point[0])];
+    for (const disc of piece.discs) {
+      const arm = Math.hypot(disc.u[0], disc.v[0]);
+      [low, high] = [Math.min(low, disc.centre[0] - arm), Math.max(high, disc.centre[0] + arm)];
+    }
+    out[2 * i] = low - piece.radius - 0.01;
+    out[2 * i + 1] = high + piece.radius + 0.01;
+  });
+  reaches.set(solid, out);
+  return out;
 }
 
 export interface Cut {
@@ -171,9 +226,14 @@ export function cutsAt(layout: Layout, station: number): Cut[] {
     const side = shapeOf(item, list, "side");
     if (station < side.box[0] || station > side.box[2]) return;
     const part = list === "parts" || list === "tyres" ? (item as Part) : null;
-    const { pieces } = part ? partSolid(part) : tubeSolid(item as Run | Shaft);
+    const solid = part ? partSolid(part) : tubeSolid(item as Run | Shaft);
     const local = station - (part ? part.at[0] : 0);
-    const loops = pieces.map((piece) => flat(pieceSection(piece, "x", local, CURVE_ERROR))).filter((loop) => loop.length >= 6);
+    const reach = reachesOf(solid);
+    const loops = solid.pieces.flatMap((piece, i) => {
+      if (local < reach[2 * i]! || local > reach[2 * i + 1]!) return [];
+      const loop = flat(pieceSection(piece, "x", local, CURVE_ERROR));
+      return loop.length >= 6 ? [loop] : [];
+    });
     if (loops.length > 0) cuts.push({ key: item.key, kind: side.kind, list, hot: side.hot, loops, shift: part ? [part.at[1], part.at[2]] : [0, 0] });
   };
   for (const tyre of tyresOf(layout)) add(tyre, "tyres");

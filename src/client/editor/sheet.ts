@@ -33,19 +33,35 @@ export function at(sheet: Sheet, u: number, v: number): [number, number] {
 const paths = new WeakMap<readonly FlatLoop[], Path2D>();
 
 /** Loops as a path in mm; made once for loops that stay the same. */
-export function pathOf(loops: readonly FlatLoop[], close = true): Path2D {
+export function pathOf(loops: readonly FlatLoop[]): Path2D {
   const known = paths.get(loops);
   if (known) return known;
   const path = new Path2D();
   for (const loop of loops) {
-    for (let i = 0; i + 1 < loop.length; i += 2) {
-      if (i === 0) path.moveTo(loop[0]!, loop[1]!);
-      else path.lineTo(loop[i]!, loop[i + 1]!);
-    }
-    if (close) path.closePath();
+    follow(path, loop);
+    path.closePath();
   }
   paths.set(loops, path);
   return path;
+}
+
+const openPaths = new WeakMap<FlatLoop, Path2D>();
+
+/** One open line as a path in mm, kept likewise. */
+export function lineOf(line: FlatLoop): Path2D {
+  const known = openPaths.get(line);
+  if (known) return known;
+  const path = new Path2D();
+  follow(path, line);
+  openPaths.set(line, path);
+  return path;
+}
+
+function follow(path: Path2D, loop: FlatLoop): void {
+  for (let i = 0; i + 1 < loop.length; i += 2) {
+    if (i === 0) path.moveTo(loop[0]!, loop[1]!);
+    else path.lineTo(loop[i]!, loop[i + 1]!);
+  }
 }
 
 /** Draws in mm of the view, shifted; widths and dashes go through `px`, which gives mm for pixels. */

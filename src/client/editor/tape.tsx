@@ -25,6 +25,7 @@ function Ticks({ width }: { width: number }) {
   const { units } = useEditor();
   const camera = useViewState((s) => s.camera);
   const set = useViewState((s) => s.set);
+  const hook = useViewState((s) => (s.station - s.camera.x) * s.camera.scale);
   const inch = units !== "mm";
   const step = niceStep(64 / camera.scale, inch);
   const first = Math.floor(camera.x / step) * step;
@@ -45,12 +46,15 @@ function Ticks({ width }: { width: number }) {
       <rect width={width} height={TAPE} fill="transparent" />
       <path d={short} stroke="var(--pencil)" strokeWidth={0.8} />
       <path d={long} stroke="var(--ink)" strokeWidth={1.1} />
-      {numbers.map((x) => (
+      {numbers.filter((x) => clearOf(hook, (x - camera.x) * camera.scale)).map((x) => (
         <text key={x} x={toScreen(camera, "side", x, 0)[0]} y={24} textAnchor="middle" className="num" fontSize={12} fill="var(--pencil-word)">{inch ? inches(x) : Math.round(x)}</text>
       ))}
     </svg>
   );
 }
+
+/** Would a number show beside the hook, not half under it? */
+const clearOf = (hook: number, x: number): boolean => x < hook - 18 || x > hook + HOOK + 18;
 
 const inches = (mm: number): string => {
   const value = Math.round((mm / 25.4) * 4) / 4;

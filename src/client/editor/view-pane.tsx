@@ -66,6 +66,15 @@ export const ViewPane = memo(function ViewPane({ view, width, height, planHeight
     films[1].current?.draw();
     films[2].current?.draw();
   });
+  // the stance in the hand: at most eight times a second
+  const following = useRef(0);
+  useEffect(() => {
+    if (!shown.previewing || view !== "side" || following.current !== 0) return;
+    following.current = window.setTimeout(() => {
+      following.current = 0;
+      if (painter.followStance()) films[1].current?.batchDraw();
+    }, 125);
+  });
   useEffect(() => {
     let rest: ReturnType<typeof setTimeout> | undefined;
     const settle = () => {

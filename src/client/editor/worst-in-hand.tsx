@@ -2,6 +2,7 @@ import type { View } from "#core/frames.ts";
 import { formatLength } from "#core/units/format-length.ts";
 import { VerdictMark } from "../ui/mark.tsx";
 import { useEditor } from "./editor-context.ts";
+import { shapesOf } from "./shapes.ts";
 import { useViewState } from "./view-state.ts";
 
 /** While something is in the hand: the worst of its gaps, drawn, worst and need, as the ledger will have them. */
@@ -11,13 +12,16 @@ export function WorstInHand({ view }: { view: View }) {
   const document = useShown((s) => s.document);
   const report = useShown((s) => s.report);
   const refusal = useShown((s) => s.refusal);
+  // on the half of the paper that the pointer is not in
+  const right = useViewState((s) => s.peek !== null && (s.peek - s.camera.x) * s.camera.scale < 480);
   if (view !== "plan") return null;
   const owner = (name: string) => (name.includes(".") ? name.slice(0, name.indexOf(".")) : name);
   const chosen = new Set(selection);
   const rows = report.gaps.filter((gap) => chosen.has(owner(gap.a)) !== chosen.has(owner(gap.b))).slice(0, 3);
-  const nameOf = (key: string) => [...document.parts, ...document.runs, ...document.shafts].find((one) => one.key === owner(key))?.name ?? key;
+  const all = shapesOf(document, "plan");
+  const nameOf = (key: string) => all.find((one) => one.key === owner(key))?.name ?? key;
   return (
-    <div className="pointer-events-none absolute bottom-2 left-3 border border-ink bg-lit px-3 py-1.5 text-sm" aria-hidden="true">
+    <div className={`pointer-events-none absolute bottom-2 border border-ink bg-lit px-3 py-1.5 text-sm ${right ? "right-3" : "left-3"}`} aria-hidden="true">
       {refusal ? <span className="text-short">{refusal}</span> : rows.length === 0 ? <span className="text-pencil">Nothing near it.</span> : (
         <table className="border-separate border-spacing-x-0">
           <tbody>
