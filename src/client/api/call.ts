@@ -1,22 +1,10 @@
 import type { z } from "zod";
 import type { Endpoint } from "#contracts/endpoint.ts";
-import { errorSchema, type ErrorBody, type ErrorCode } from "#contracts/errors.ts";
+import type { ErrorBody } from "#contracts/errors.ts";
+import { CallError } from "./call-error.ts";
 
-/** What the server refused, or that it could not be reached (code "offline"). */
-export class CallError extends Error {
-  override readonly name = "CallError";
-  readonly code: ErrorCode | "offline";
-  readonly fields: NonNullable<ErrorBody["error"]["fields"]>;
-  readonly current: ErrorBody["error"]["current"];
-  readonly requestId: string | null;
-  constructor(code: ErrorCode | "offline", message: string, body?: ErrorBody["error"]) {
-    super(message);
-    this.code = code;
-    this.fields = body?.fields ?? [];
-    this.current = body?.current;
-    this.requestId = body?.requestId ?? null;
-  }
-}
+export { CallError };
+
 
 type Input<E extends Endpoint> = {
   params?: z.input<E["params"]>;
@@ -27,30 +15,42 @@ type Input<E extends Endpoint> = {
   signal?: AbortSignal;
 };
 
+/** Longest wait for an answer, ms: a server that says nothing for so long counts as away. */
+const PATIENCE = 30_000;
+
 /** The address of an endpoint with its parameters filled in. */
-export function addressOf(endpoint: Endpoint, params: object = {}, query: object = {}): string {
+export function addressOf(endpoint: Pick<Endpoint, "path">, params: object = {}, query: object = {}): string {
   const path = endpoint.path.replace(/:([A-Za-z]+)/g, (_, name: string) => encodeURIComponent(String((params as Record<string, unknown>)[name])));
   const search = new URLSearchParams(Object.entries(query).filter(([, value]) => value !== undefined).map(([key, value]) => [key, String(value)])).toString();
   return search ? `${path}?${search}` : path;
 }
 
+/**
+ * Calls an endpoint. Writes are JSON from this page only: the cookie is SameSite, and the server refuses a write that the browser says comes from elsewhere.
+ * @throws CallError with the server's code, message and fields; "offline" where no answer came; what an abort throws
+ */
 export async function call<E extends Endpoint>(endpoint: E, input: Input<E> = {}): Promise<z.output<E["response"]>> {
+  const patience = AbortSignal.timeout(PATIENCE);
   let response: Response;
+  let json: unknown;
   try {
-    const init: RequestInit = { method: endpoint.method, credentials: "same-origin", headers: { Accept: "application/json" } };
+    const init: RequestInit = { method: endpoint.method, credentials: "same-origin", headers: { Accept: "application/json" }, signal: input.signal ? AbortSignal.any([input.signal, patience]) : patience };
     if (endpoint.method !== "GET") {
       init.headers = { ...init.headers, "Content-Type": "application/json" };
       init.body = input.text ?? JSON.stringify(input.body ?? {});
     }
-    if (input.signal) init.signal = input.signal;
     response = await fetch(addressOf(endpoint, input.params as object, input.query as object), init);
+    json = await response.json().catch(() => null);
   } catch (error) {
-    if (error instanceof DOMException && error.name === "AbortError") throw error;
+    if (input.signal?.aborted) throw error;
     throw new CallError("offline", "The server cannot be reached.");
   }
-  const json: unknown = await response.json().catch(() => null);
   if (response.ok) return json as z.output<E["response"]>;
-  const parsed = errorSchema.safeParse(json);
-  if (!parsed.success) throw new CallError(response.status >= 502 ? "offline" : "failed", "The server answered in a way that cannot be read.");
-  throw new CallError(parsed.data.error.code, parsed.data.error.message, parsed.data.error);
+  if (!isErrorBody(json)) throw new CallError(response.status >= 502 ? "offline" : "failed", response.status >= 502 ? "The server cannot be reached." : "The server answered in a way that cannot be read.");
+  throw new CallError(json.error.code, json.error.message, json.error);
+}
+
+function isErrorBody(json: unknown): json is ErrorBody {
+  const error = (json as ErrorBody | null)?.error;
+  return typeof error === "object" && error !== null && typeof error.code === "string" && typeof error.message === "string";
 }

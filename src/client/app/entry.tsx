@@ -1,54 +1,61 @@
-import "@fontsource/barlow-semi-condensed/latin-400.css";
-import "@fontsource/barlow-semi-condensed/latin-600.css";
-import "@fontsource/jetbrains-mono/latin-400.css";
-import "@fontsource/jetbrains-mono/latin-600.css";
 import "./theme.css";
 import { QueryClient, QueryClientProvider } from "@tanstack/react-query";
 import { lazy, StrictMode, Suspense } from "react";
 import { createRoot } from "react-dom/client";
-import { createBrowserRouter, RouterProvider, useRouteError } from "react-router-dom";
-import { Toaster } from "sonner";
-import { CallError } from "../api/call.ts";
-import { Trouble, Waiting } from "../ui/controls.tsx";
-import { NotFoundPage } from "./not-found.tsx";
-import { SignedIn } from "./shell.tsx";
+import { createBrowserRouter, RouterProvider } from "react-router-dom";
+import { CallError } from "../api/call-error.ts";
+import { BrokenPage, NotFound } from "./not-found.tsx";
+import { PageLoading, SignedIn } from "./signed-in.tsx";
+import { patterns } from "./paths.ts";
 
 const SignInPage = lazy(() => import("../features/sign-in/sign-in-page.tsx"));
 const BuildsPage = lazy(() => import("../features/builds/builds-page.tsx"));
 const LayoutsPage = lazy(() => import("../features/layouts/layouts-page.tsx"));
+const LayoutDesk = lazy(() => import("./layout-desk.tsx"));
 const BenchPage = lazy(() => import("../features/bench/bench-page.tsx"));
 const SheetsPage = lazy(() => import("../features/sheets/sheets-page.tsx"));
 const HistoryPage = lazy(() => import("../features/history/history-page.tsx"));
 const MethodPage = lazy(() => import("../features/method/method-page.tsx"));
-
-function Broken() {
-  return <Trouble error={useRouteError()} retry={() => location.reload()} />;
-}
+const Toaster = lazy(() => import("sonner").then((module) => ({ default: module.Toaster })));
 
 const router = createBrowserRouter([
-  { path: "/sign-in", element: <SignInPage />, errorElement: <Broken /> },
+  { path: "/sign-in", element: <SignInPage />, errorElement: <BrokenPage /> },
   {
-    element: <SignedIn />, errorElement: <Broken />, children: [
+    element: <SignedIn />,
+    errorElement: <BrokenPage />,
+    children: [
       { path: "/", element: <BuildsPage /> },
-      { path: "/builds/:buildId", element: <LayoutsPage /> },
-      { path: "/builds/:buildId/layouts/:layoutId", element: <BenchPage /> },
-      { path: "/builds/:buildId/layouts/:layoutId/sheets", element: <SheetsPage /> },
-      { path: "/builds/:buildId/layouts/:layoutId/history", element: <HistoryPage /> },
+      { path: patterns.build, element: <LayoutsPage /> },
+      {
+        // one document store for every page of a layout: going from the bench to the sheets keeps what waits and what can be undone
+        path: patterns.layout,
+        element: <LayoutDesk />,
+        children: [
+          { index: true, element: <BenchPage /> },
+          { path: "sheets", element: <SheetsPage /> },
+          { path: "history", element: <HistoryPage /> },
+          { path: "*", element: <NotFound /> },
+        ],
+      },
       { path: "/method", element: <MethodPage /> },
-      { path: "*", element: <NotFoundPage /> },
+      { path: "*", element: <NotFound /> },
     ],
   },
 ]);
 
-const client = new QueryClient({
-  defaultOptions: { queries: { staleTime: 10_000, retry: (count, error) => error instanceof CallError && (error.code === "offline" || error.code === "busy" || error.code === "away") && count < 3 } },
-});
+/** Tried again by itself only where the same request may well be answered in a moment. */
+const passes = (error: Error) => error instanceof CallError && (error.code === "offline" || error.code === "busy" || error.code === "away");
+const client = new QueryClient({ defaultOptions: { queries: { staleTime: 10_000, retry: (count, error) => passes(error) && count < 3 }, mutations: { retry: false } } });
 
 createRoot(document.getElementById("root")!).render(
   <StrictMode>
     <QueryClientProvider client={client}>
-      <Suspense fallback={<Waiting what="the page" />}><RouterProvider router={router} /></Suspense>
-      <Toaster position="bottom-center" toastOptions={{ style: { borderRadius: 0, border: "1px solid var(--ink)", background: "var(--lit)", color: "var(--ink)", fontFamily: "inherit" } }} />
+      <Suspense fallback={<PageLoading />}>
+        <RouterProvider router={router} />
+      </Suspense>
+      <Suspense>
+        <Toaster position="bottom-center" toastOptions={{ style: { borderRadius: 0, border: "1px solid var(--ink)", background: "var(--lit)", color: "var(--ink)", fontFamily: "var(--font-sans)", fontSize: 16, boxShadow: "none" } }} />
+      </Suspense>
     </QueryClientProvider>
   </StrictMode>,
 );

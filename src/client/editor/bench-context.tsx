@@ -4,6 +4,7 @@ import { rolesFor } from "#core/layout/command-access.ts";
 import type { Command, Role } from "#core/layout/commands.ts";
 import type { LengthUnit } from "#core/units/parse-length.ts";
 import type { DocumentState, DocumentStore } from "./document-store.ts";
+import type { LiveReports } from "./panels/live-reports.ts";
 import type { Shown } from "./shown.ts";
 
 /** Everything the screens of one layout share. */
@@ -11,6 +12,7 @@ export interface Bench {
   readonly store: DocumentStore;
   /** The document with the change that is in the hand. */
   readonly shown: StoreApi<Shown>;
+  readonly reports: StoreApi<LiveReports>;
   readonly buildId: string;
   readonly layoutId: string;
   readonly role: Role;
@@ -34,6 +36,11 @@ export function useDocument<T>(selector: (state: DocumentState) => T): T {
 /** Part of what is on screen: the document, with the change in the hand where there is one. */
 export function useShown<T>(selector: (shown: Shown) => T): T {
   return useStore(useBench().shown, selector);
+}
+
+/** Part of the stance, mass and litres of what is on screen. */
+export function useReports<T>(selector: (reports: LiveReports) => T): T {
+  return useStore(useBench().reports, selector);
 }
 
 /** Whether the person may give such a command here: by role, and while the layout is not in the archive. */

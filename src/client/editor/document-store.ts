@@ -62,7 +62,9 @@ export interface DocumentState {
   readonly seq: number;
   readonly trouble: Trouble | null;
   /** Why the last command was not taken, until the next one. */
-  readonly refusal: { readonly reason: string; readonly fields: readonly Fault[] } | null;
+  readonly refusal: string | null;
+  /** The same at its places in the document. */
+  readonly refusedFields: readonly Fault[];
 }
 
 export interface DocumentStore {
@@ -80,6 +82,8 @@ export interface DocumentStore {
   close(): void;
 }
 
+export { browserKeeper, type Keeper } from "./keeper.ts";
+
 export interface TheirChange {
   readonly seq: number;
   readonly commandId: string;
@@ -88,20 +92,21 @@ export interface TheirChange {
 
 /** What an error of the link means: try again later, both values to choose from, already taken, or a refusal in words. */
 export type Meaning =
-  | { readonly kind: "later"; readonly message: string }
+  | { readonly kind: "later"; readonly message?: string }
   | { readonly kind: "conflict"; readonly message: string; readonly theirs: readonly Theirs[] }
   | { readonly kind: "taken" }
   | { readonly kind: "refused"; readonly message: string };
 
 /** How the store reaches the server: plain functions, so that tests give their own. */
 export interface Link {
-  send(waiting: Waiting): Promise<{ readonly seq: number; readonly replay: boolean }>;
+  send(waiting: Waiting, base: number): Promise<{ readonly seq: number; readonly replay: boolean }>;
   /** Every change after a seq, oldest first. */
   changesAfter(seq: number): Promise<readonly TheirChange[]>;
   meaning(error: unknown): Meaning;
 }
 
 const nameOf = (item: { readonly list: string; readonly key: string }) => `${item.list}/${item.key}`;
+const AWAY = "The server cannot be reached.";
 const MOST_STEPS = 500;
 const RETRY_MS = [1_000, 2_000, 4_000, 8_000, 15_000];
 
@@ -122,7 +127,7 @@ export function createDocumentStore(start: { readonly document: Layout; readonly
 
   const scene = buildScene(start.document);
   const state = createStore<DocumentState>(() => ({
-    document: start.document, scene, report: scene.report, past: [], future: [], waiting: [], saveState: "saved", kept: true, away: null, savedAt: null, seq: start.seq, trouble: null, refusal: null,
+    document: start.document, scene, report: scene.report, past: [], future: [], waiting: [], saveState: "saved", kept: true, away: null, savedAt: null, seq: start.seq, trouble: null, refusal: null, refusedFields: [],
   }));
   const now = state.getState;
 
@@ -151,17 +156,17 @@ export function createDocumentStore(start: { readonly document: Layout; readonly
   const apply = (command: Command, label: string): Step | null => {
     const applied = applyCommand(now().document, command);
     if (!applied.ok) {
-      state.setState({ refusal: { reason: applied.reason, fields: applied.fields ?? [] } });
+      state.setState({ refusal: applied.reason, refusedFields: applied.fields ?? [] });
       return null;
     }
     const step: Step = { commandId: crypto.randomUUID(), label, diff: applied.diff };
     if (applied.diff.length === 0) {
-      state.setState({ refusal: null });
+      state.setState({ refusal: null, refusedFields: [] });
       return step;
     }
     const one: Waiting = { ...step, command, base: now().seq };
     given.add(one.commandId);
-    show(applied.layout, { waiting: [...now().waiting, one], saveState: now().trouble ? "choice" : "saving", kept: false, refusal: null });
+    show(applied.layout, { waiting: [...now().waiting, one], saveState: now().trouble ? "choice" : "saving", kept: false, refusal: null, refusedFields: [] });
     void keep(() => keeper.keep(one)).then(pump);
     return step;
   };
@@ -184,7 +189,7 @@ export function createDocumentStore(start: { readonly document: Layout; readonly
           await takeUp();
           continue;
         }
-        const answer = await link.send(first);
+        const answer = await link.send(first, first.base);
         accept(first, answer);
         if (now().seq < answer.seq) await takeUp();
       }
@@ -225,7 +230,7 @@ export function createDocumentStore(start: { readonly document: Layout; readonly
     if (meaning.kind === "conflict" || meaning.kind === "refused") {
       if (first) return raise({ kind: meaning.kind, waiting: first, message: meaning.message, theirs: meaning.kind === "conflict" ? meaning.theirs : [] });
     }
-    state.setState({ saveState: now().waiting.length > 0 ? "waiting" : "saved", away: meaning.kind === "later" ? meaning.message : "The server could not be reached." });
+    state.setState({ saveState: now().waiting.length > 0 ? "waiting" : "saved", away: (meaning.kind === "later" ? meaning.message : undefined) ?? AWAY });
     again(RETRY_MS[Math.min(failures++, RETRY_MS.length - 1)]!);
   };
 
@@ -319,7 +324,7 @@ export function createDocumentStore(start: { readonly document: Layout; readonly
         if (now().saveState !== "choice") state.setState({ away: null });
       } catch (error) {
         const meaning = link.meaning(error);
-        if (meaning.kind === "later") state.setState({ away: meaning.message });
+        if (meaning.kind === "later") state.setState({ away: meaning.message ?? AWAY });
       } finally {
         sending = false;
       }

@@ -24,7 +24,7 @@ interface Kept {
  * Keeps unsent commands in IndexedDB: one entry a command, under the person and the layout, so that two pages of one browser never overwrite each other. What a page that
  * is gone has left is taken over by the next one; whether a page still lives is told by a lock that it holds.
  */
-export function browserKeeper(layoutId: string, personId: string): Keeper {
+export function browserKeeper(layoutId: string, personId = ""): Keeper {
   let store: UseStore | null = null;
   const open = () => (store ??= createStore("handbreadth", "waiting"));
   const page = crypto.randomUUID();

@@ -1,109 +1,127 @@
-import { useMutation, useQuery, useQueryClient } from "@tanstack/react-query";
 import { useRef, useState } from "react";
 import { Link, useNavigate, useParams } from "react-router-dom";
 import { toast } from "sonner";
-import { getBuild, listMembers } from "#contracts/builds.contract.ts";
-import { archiveLayout, createLayout, duplicateLayout, exportLayout, importLayout, listLayouts, type LayoutSummary } from "#contracts/layouts.contract.ts";
-import { addressOf, call, CallError } from "../../api/call.ts";
+import { exportLayout, type LayoutSummary } from "#contracts/layouts.contract.ts";
+import { addressOf, CallError } from "../../api/call.ts";
+import { Header, initialsOf } from "../../app/header.tsx";
+import { NotFound } from "../../app/not-found.tsx";
 import { paths } from "../../app/paths.ts";
-import { Header } from "../../app/shell.tsx";
-import { Button, Dialog, Field, FIELD, Trouble, Waiting } from "../../ui/controls.tsx";
+import { useTitle } from "../../app/theme.ts";
+import { Button } from "../../ui/button.tsx";
+import { NameDialog } from "../../ui/dialog.tsx";
+import { Menu, type MenuItem } from "../../ui/menu.tsx";
+import { Segmented } from "../../ui/segmented.tsx";
+import { Empty, Loading, TroubleNote } from "../../ui/states.tsx";
+import { Cell, TitleBlock } from "../../ui/title-block.tsx";
+import { exactText, whenText } from "../../ui/when.ts";
+import { FileFaults } from "./file-faults.tsx";
+import { useBuild, useLayoutChanges, useLayouts, useMembers } from "./layouts.queries.ts";
 
-const LARGEST = 20 * 1024 * 1024;
+type Asking = { what: "new" } | { what: "duplicate" | "rename"; one: LayoutSummary } | null;
 
+/** A build's layouts: begun, brought in from a file, duplicated, renamed, put away, taken out as files. */
 export default function LayoutsPage() {
   const { buildId = "" } = useParams();
-  const client = useQueryClient();
-  const navigate = useNavigate();
+  const build = useBuild(buildId);
+  const members = useMembers(buildId);
   const [archived, setArchived] = useState(false);
-  const build = useQuery({ queryKey: ["build", buildId], queryFn: () => call(getBuild, { params: { buildId } }) });
-  const members = useQuery({ queryKey: ["members", buildId], queryFn: () => call(listMembers, { params: { buildId } }) });
-  const layouts = useQuery({ queryKey: ["layouts", buildId, archived], queryFn: () => call(listLayouts, { params: { buildId }, query: { archived: archived ? "yes" : "no" } }) });
-  const [naming, setNaming] = useState<{ like: LayoutSummary | null } | null>(null);
-  const [name, setName] = useState("");
-  const [faults, setFaults] = useState<CallError | null>(null);
-  const file = useRef<HTMLInputElement>(null);
-  const refresh = () => client.invalidateQueries({ queryKey: ["layouts", buildId] });
-  const save = useMutation({
-    mutationFn: () => (naming?.like ? call(duplicateLayout, { params: { buildId, layoutId: naming.like.id }, body: { name } }) : call(createLayout, { params: { buildId }, body: { name } })),
-    onSuccess: async (made) => {
-      setNaming(null);
-      await refresh();
-      void navigate(paths.bench(buildId, made.id));
-    },
-  });
-  const archive = useMutation({ mutationFn: (one: LayoutSummary) => call(archiveLayout, { params: { buildId, layoutId: one.id }, body: { archived: !one.archived } }), onSuccess: refresh, onError: (error) => toast.error(error.message) });
-  const bringIn = useMutation({
-    mutationFn: async (given: File) => {
-      if (given.size > LARGEST) throw new CallError("too-large", "A layout file is at most 20 MB.");
-      return call(importLayout, { params: { buildId }, text: await given.text() });
-    },
-    onSuccess: async (made) => {
-      await refresh();
-      toast.success(`${made.name} is in.`);
-    },
-    onError: (error) => setFaults(error instanceof CallError ? error : new CallError("failed", String(error))),
-  });
-  if (build.isPending) return <><Header /><Waiting what="the build" /></>;
-  if (build.isError) return <><Header /><Trouble error={build.error} retry={() => void build.refetch()} /></>;
-  const owner = build.data.role === "owner";
-  const ask = (like: LayoutSummary | null) => {
-    save.reset();
-    setName(like ? `${like.name}, next try` : "");
-    setNaming({ like });
+  const layouts = useLayouts(buildId, archived);
+  const { create, duplicate, rename, archive, bringIn } = useLayoutChanges(buildId);
+  const navigate = useNavigate();
+  const [asking, setAsking] = useState<Asking>(null);
+  const [faults, setFaults] = useState<{ error: Error; file: string } | null>(null);
+  const input = useRef<HTMLInputElement>(null);
+  useTitle(build.data?.name);
+  if (build.error instanceof CallError && build.error.code === "not-found") return <NotFound what="build" />;
+  const owner = build.data?.role === "owner";
+  const open = (one: LayoutSummary) => void navigate(paths.bench(buildId, one.id));
+  const ask = (next: Asking) => {
+    for (const mutation of [create, duplicate, rename]) mutation.reset();
+    setAsking(next);
   };
+  const take = (file: File | undefined) => {
+    if (!file) return;
+    bringIn.mutate(file, {
+      onSuccess: (made) => toast(`${made.name} is in, with ${made.parts} parts and ${made.runs} runs.`, { action: { label: "Open it", onClick: () => open(made) } }),
+      onError: (error) => setFaults({ error, file: file.name }),
+    });
+  };
+  const items = (one: LayoutSummary): MenuItem[] => [
+    { label: "Export the layout file", act: () => location.assign(addressOf(exportLayout, { buildId, layoutId: one.id })) },
+    ...(owner ? [
+      { label: "Duplicate", act: () => ask({ what: "duplicate", one }) },
+      { label: "Rename", act: () => ask({ what: "rename", one }), not: one.archived ? "take it out of the archive first" : undefined },
+      { label: one.archived ? "Take out of the archive" : "Put into the archive", act: () => archive.mutate(one, {
+        onSuccess: () => toast(one.archived ? `${one.name} is at work again.` : `${one.name} is in the archive.`, { action: { label: "Undo", onClick: () => archive.mutate({ ...one, archived: !one.archived }) } }),
+        onError: (error) => toast.error(error.message),
+      }) },
+    ] : []),
+  ];
   return (
-    <>
-      <Header crumbs={[{ to: paths.build(buildId), text: build.data.name }]} />
-      <main className="mx-auto grid max-w-5xl gap-12 px-6 py-10 md:grid-cols-[1fr_240px]">
-        <div>
-          <div className="mb-6 flex flex-wrap items-end justify-between gap-3">
-            <h1 className="text-3xl font-semibold">{build.data.name}</h1>
-            {owner && (
-              <div className="flex gap-3">
-                <Button onClick={() => file.current?.click()} disabled={bringIn.isPending}>{bringIn.isPending ? "Reading …" : "Import a layout file"}</Button>
-                <Button tone="strong" onClick={() => ask(null)}>New layout</Button>
-                <input ref={file} type="file" accept=".json,application/json" className="hidden" aria-label="Layout file" onChange={(event) => { const given = event.target.files?.[0]; if (given) bringIn.mutate(given); event.target.value = ""; }} />
-              </div>
-            )}
+    <div
+      className="min-h-full"
+      onDragOver={(event) => owner && event.preventDefault()}
+      onDrop={(event) => {
+        if (!owner) return;
+        event.preventDefault();
+        take(event.dataTransfer.files[0]);
+      }}
+    >
+      <Header crumbs={build.data ? [{ to: paths.build(buildId), text: build.data.name }] : []} role={build.data?.role} />
+      <main id="main" className="mx-auto max-w-5xl px-5 py-10 sm:px-8">
+        <div className="mb-8 flex flex-wrap items-end justify-between gap-4">
+          <div>
+            <h1 className="text-3xl font-semibold">{build.data?.name ?? "\u00a0"}</h1>
+            <p className="text-pencil">{build.data ? <>You are its {build.data.role}. {!owner && "Layouts are begun, brought in and put away by the owner."}</> : "\u00a0"}</p>
           </div>
-          <div className="mb-2 flex gap-5 text-sm"><button type="button" className={archived ? "text-pencil" : "font-semibold underline underline-offset-4"} onClick={() => setArchived(false)}>At work</button><button type="button" className={archived ? "font-semibold underline underline-offset-4" : "text-pencil"} onClick={() => setArchived(true)}>Archived</button></div>
-          {layouts.isPending ? <Waiting what="the layouts" /> : layouts.isError ? <Trouble error={layouts.error} retry={() => void layouts.refetch()} /> : layouts.data.layouts.length === 0 ? (
-            <p className="border border-dashed border-pencil p-8 text-center text-pencil">{archived ? "Nothing is archived." : owner ? "No layout yet: begin a new one, or import a layout file." : "No layout yet."}</p>
-          ) : (
-            <ul className="border-t border-ink">
-              {layouts.data.layouts.map((one) => (
-                <li key={one.id} className="flex flex-wrap items-center gap-x-5 gap-y-1 border-b border-hair py-4">
-                  <Link to={paths.bench(buildId, one.id)} className="text-lg font-semibold hover:underline">{one.name}</Link>
-                  <span className="text-sm text-pencil">{one.parts} parts, {one.runs} runs; change {one.seq}{one.updatedBy ? `, ${one.updatedBy}` : ""}, {new Date(one.updatedAt).toLocaleString([], { dateStyle: "medium", timeStyle: "short" })}</span>
-                  <span className="ml-auto flex gap-1">
-                    <a className="min-h-7 px-2 text-sm font-semibold text-pencil hover:text-ink" href={addressOf(exportLayout, { buildId, layoutId: one.id })} download>Export</a>
-                    {owner && <><Button tone="quiet" small onClick={() => ask(one)}>Duplicate</Button><Button tone="quiet" small onClick={() => archive.mutate(one)}>{one.archived ? "Take out of the archive" : "Archive"}</Button></>}
-                  </span>
+          {owner && (
+            <div className="flex flex-wrap gap-3">
+              <Button disabled={bringIn.isPending} onClick={() => input.current?.click()} title="Or drop the file anywhere on this page">{bringIn.isPending ? "Reading the file …" : "Bring in a layout file"}</Button>
+              <Button look="main" onClick={() => ask({ what: "new" })}>Begin a layout</Button>
+              <input ref={input} type="file" accept=".json,application/json" className="hidden" aria-label="Layout file" onChange={(event) => {
+                take(event.target.files?.[0]);
+                event.target.value = "";
+              }} />
+            </div>
+          )}
+        </div>
+        <div className="mb-5"><Segmented label="Which layouts" small value={archived ? "archive" : "work"} onChange={(value) => setArchived(value === "archive")} options={[{ value: "work", label: "at work" }, { value: "archive", label: "archive" }]} /></div>
+        {build.isError || layouts.isError ? <TroubleNote error={build.error ?? layouts.error} again={() => void (build.refetch(), layouts.refetch())} title="The layouts could not be fetched" /> : !layouts.data ? <Loading what="Fetching the layouts" lines={6} /> : layouts.data.layouts.length === 0 ? (
+          <Empty title={archived ? "The archive is empty" : "No layout yet"}>{archived ? "Layouts that are put away stand here; nothing of them is lost." : owner ? "A layout is one arrangement of the car's parts. Begin with a bare chassis, or bring in a layout file." : "The owner has not begun one yet."}</Empty>
+        ) : (
+          <ul className="space-y-5">
+            {layouts.data.layouts.map((one) => (
+              <li key={one.id}>
+                <TitleBlock>
+                  <Cell label="layout" className="grow basis-72"><Link to={paths.bench(buildId, one.id)} className="block truncate text-xl font-semibold hover:underline hover:underline-offset-4" title={one.name}>{one.name}</Link></Cell>
+                  <Cell label="parts" className="basis-20 max-sm:grow"><span className="num text-lg">{one.parts}</span></Cell>
+                  <Cell label="runs" className="basis-20 max-sm:grow"><span className="num text-lg">{one.runs}</span></Cell>
+                  <Cell label="change" className="basis-24 max-sm:grow"><Link to={paths.history(buildId, one.id)} className="num text-lg hover:underline" title="Its history">{one.seq}</Link></Cell>
+                  <Cell label={`last change${one.updatedBy ? `, ${one.updatedBy}` : ""}`} className="basis-52 max-sm:grow"><time dateTime={one.updatedAt} title={exactText(one.updatedAt)} className="text-lg">{whenText(one.updatedAt)}</time></Cell>
+                  <Cell className="basis-20 items-end"><Menu label={`More for ${one.name}`} className="min-h-8 border border-hair px-2 hover:border-ink" items={items(one)}>more</Menu></Cell>
+                </TitleBlock>
+              </li>
+            ))}
+          </ul>
+        )}
+        <section aria-labelledby="people" className="mt-14">
+          <h2 id="people" className="caption mb-3">Members</h2>
+          {members.isError ? <p className="text-pencil">They could not be fetched.</p> : !members.data ? <Loading what="Fetching the members" lines={2} /> : (
+            <ul className="grid gap-x-8 gap-y-2 sm:grid-cols-2">
+              {members.data.members.map((one) => (
+                <li key={one.personId} className="flex items-center gap-3 border-b border-hair py-1.5">
+                  <span aria-hidden="true" className="num grid h-8 w-9 place-items-center border border-hair text-sm">{initialsOf(one.name)}</span>
+                  <span className="font-semibold">{one.name}</span><span className="text-pencil">{one.role}</span>
                 </li>
               ))}
             </ul>
           )}
-        </div>
-        <aside>
-          <h2 className="caption mb-3">People</h2>
-          <ul className="space-y-2">{members.data?.members.map((one) => <li key={one.personId}><span className="font-semibold">{one.name}</span> <span className="text-pencil">{one.role}</span></li>)}</ul>
-        </aside>
+        </section>
       </main>
-      {naming && (
-        <Dialog title={naming.like ? `Duplicate ${naming.like.name}` : "New layout"} onClose={() => setNaming(null)}>
-          <form className="space-y-5" onSubmit={(event) => { event.preventDefault(); save.mutate(); }}>
-            <Field label="Name of the layout" error={save.isError ? save.error.message : undefined}>{(id) => <input id={id} autoFocus required maxLength={200} className={FIELD} value={name} onChange={(event) => setName(event.target.value)} />}</Field>
-            <div className="flex justify-end"><Button type="submit" tone="strong" disabled={save.isPending}>{naming.like ? "Duplicate" : "Begin"}</Button></div>
-          </form>
-        </Dialog>
-      )}
-      {faults && (
-        <Dialog title="The file cannot be taken" onClose={() => setFaults(null)} wide>
-          <p className="mb-4">{faults.message} Nothing was stored.</p>
-          {faults.fields.length > 0 && <table className="w-full text-left"><thead><tr className="border-b border-ink text-sm text-pencil"><th className="py-1 pr-6 font-normal">place in the file</th><th className="font-normal">what is wrong</th></tr></thead><tbody>{faults.fields.map((fault, i) => <tr key={i} className="border-b border-hair align-top"><td className="num py-1 pr-6 text-sm">{fault.path || "whole file"}</td><td className="py-1">{fault.message}</td></tr>)}</tbody></table>}
-        </Dialog>
-      )}
-    </>
+      {asking?.what === "new" && <NameDialog title="Begin a layout" label="What is this arrangement called?" action="Begin" busy={create.isPending} error={create.error?.message} onClose={() => setAsking(null)} onGive={(name) => create.mutate(name, { onSuccess: open })} />}
+      {asking?.what === "duplicate" && <NameDialog title={`Duplicate ${asking.one.name}`} label="Name of the new one" start={`${asking.one.name}, next try`} action="Duplicate" busy={duplicate.isPending} error={duplicate.error?.message} onClose={() => setAsking(null)} onGive={(name) => duplicate.mutate({ like: asking.one, name }, { onSuccess: open })} />}
+      {asking?.what === "rename" && <NameDialog title={`Rename ${asking.one.name}`} label="Name of the layout" start={asking.one.name} action="Rename" busy={rename.isPending} error={rename.error?.message} onClose={() => setAsking(null)} onGive={(name) => rename.mutate({ one: asking.one, name }, { onSuccess: () => setAsking(null) })} />}
+      {faults && <FileFaults {...faults} onClose={() => setFaults(null)} />}
+    </div>
   );
 }

@@ -1,15 +1,17 @@
 import type { ReactNode } from "react";
-import { Header } from "../../app/shell.tsx";
+import { Header } from "../../app/header.tsx";
+import { useTitle } from "../../app/theme.ts";
 import { VERDICT_SAYS, VerdictWord } from "../../ui/mark.tsx";
 
 const VERDICTS = ["touch", "rub", "short", "tight", "clear"] as const;
 
 /** How a number comes about and what it does not know: the same words as the core's own notes, for the people who act on them. */
 export default function MethodPage() {
+  useTitle("How a gap is found");
   return (
     <>
       <Header />
-      <main className="mx-auto max-w-3xl px-6 py-10 text-lg">
+      <main id="main" className="mx-auto max-w-3xl px-6 py-10 text-lg">
         <h1 className="mb-2 text-3xl font-semibold">How it measures</h1>
         <p className="mb-10 text-pencil">What stands behind every number, and where it ends.</p>
         <Chapter title="From flat drawings to solids">
