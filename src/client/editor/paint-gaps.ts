@@ -66,7 +66,8 @@ export function paintBalloons(sheet: Sheet, balloons: readonly Balloon[], spots:
     const [ax, ay] = at(sheet, gap.pointA[u], gap.pointA[v]);
     const [bx, by] = at(sheet, gap.pointB[u], gap.pointB[v]);
     const off = spots.get(wanting.id) ?? { x: 0, y: -28 };
-    const [x, y] = [wanting.x + off.x, wanting.y + off.y];
+    const x = Math.min(sheet.width - wanting.halfWidth - 3, Math.max(wanting.halfWidth + 3, wanting.x + off.x));
+    const y = Math.min(sheet.height - HALF_HEIGHT - 3, Math.max(HALF_HEIGHT + 3, wanting.y + off.y));
     ctx.strokeStyle = ink;
     ctx.beginPath();
     ctx.moveTo(wanting.x, wanting.y);

@@ -128,15 +128,31 @@ export function createPainter(input: () => PaneInput) {
     return map;
   };
 
+  /** Where the handle that turns the chosen part is, pixels; null where there is none. */
+  const handle = (): { x: number; y: number; corner: [number, number]; key: string; middle: [number, number] } | null => {
+    const { shown, view, mayMove, width } = input();
+    const { selection, camera, tool } = useViewState.getState();
+    if (!mayMove || selection.length !== 1 || tool !== "pick") return null;
+    const part = shown.document.parts.find((one) => one.key === selection[0]);
+    if (!part || part.locked) return null;
+    const shape = shapesOf(shown.document, view).find((one) => one.key === part.key);
+    if (!shape || !Number.isFinite(shape.box[0])) return null;
+    const page = { view, camera } as Sheet;
+    const corner = at(page, shape.box[2], shape.box[3]);
+    return { x: Math.min(width - 14, corner[0] + HANDLE), y: Math.max(DATUM_STRIP + 12, corner[1] - HANDLE), corner, key: part.key, middle: [0.5 * (shape.box[0] + shape.box[2]), 0.5 * (shape.box[1] + shape.box[3])] };
+  };
+
   const settleSpots = (page: Sheet, balloons: readonly Balloon[], again: boolean): void => {
     const wanting = balloons.flatMap((balloon) => wantingOf(page, balloon) ?? []);
     const asked = again ? wanting : wanting.filter((one) => !spots.has(one.id));
     if (asked.length === 0) return;
     ink ??= inkOf(page);
-    const standing = again ? [] : wanting.flatMap((one) => {
+    const turner = handle();
+    const standing = turner ? [{ x: turner.x, y: turner.y, halfWidth: 12, halfHeight: 12 }] : [];
+    if (!again) standing.push(...wanting.flatMap((one) => {
       const spot = spots.get(one.id);
       return spot ? [{ x: one.x + spot.x, y: one.y + spot.y, halfWidth: one.halfWidth, halfHeight: one.halfHeight }] : [];
-    });
+    }));
     const chosen = chooseSpots(asked, ink, { width: page.width, height: page.height, head: page.view === "plan" ? DATUM_STRIP + 2 : 36 }, spots, standing);
     if (again) spots.clear();
     for (const [id, spot] of chosen) spots.set(id, spot);
@@ -183,13 +199,13 @@ export function createPainter(input: () => PaneInput) {
       const run = state.selection.length === 1 ? shown.document.runs.find((one) => one.key === state.selection[0]) : undefined;
       if (run) paintNodes(page, run.nodes, state.node);
       const balloons = shownBalloons();
-      settleSpots(page, balloons, false);
+      settleSpots(page, balloons, shown.previewing);
       paintBalloons(page, balloons, spots);
       paintWitnesses(page, state.witnesses, units);
       if (state.draft) paintDraft(page, state.draft, pointer);
       if (state.measured) paintMeasured(page, state.measured, pointer, units);
-      const handle = this.handle();
-      if (handle) paintHandle(page, handle.x, handle.y, handle.corner);
+      const turner = handle();
+      if (turner) paintHandle(page, turner.x, turner.y, turner.corner);
     },
     /** Measures the stance of what is in the hand. True where its lines have to be drawn again. */
     followStance(): boolean {
@@ -208,19 +224,7 @@ export function createPainter(input: () => PaneInput) {
       settleSpots(page, shownBalloons(), true);
       return before !== [...spots].map(([id, spot]) => `${id}${spot.x},${spot.y}`).join();
     },
-    /** Where the handle that turns the chosen part is, pixels; null where there is none. */
-    handle(): { x: number; y: number; corner: [number, number]; key: string; middle: [number, number] } | null {
-      const { shown, view, mayMove, width } = input();
-      const { selection, camera, tool } = useViewState.getState();
-      if (!mayMove || selection.length !== 1 || tool !== "pick") return null;
-      const part = shown.document.parts.find((one) => one.key === selection[0]);
-      if (!part || part.locked) return null;
-      const shape = shapesOf(shown.document, view).find((one) => one.key === part.key);
-      if (!shape || !Number.isFinite(shape.box[0])) return null;
-      const page = { view, camera } as Sheet;
-      const corner = at(page, shape.box[2], shape.box[3]);
-      return { x: Math.min(width - 14, corner[0] + HANDLE), y: Math.max(DATUM_STRIP + 12, corner[1] - HANDLE), corner, key: part.key, middle: [0.5 * (shape.box[0] + shape.box[2]), 0.5 * (shape.box[1] + shape.box[3])] };
-    },
+    handle,
     balloonAt(px: number, py: number, ctx: CanvasRenderingContext2D): Balloon | null {
       const page = sheet(ctx);
       return shownBalloons().find((balloon) => {

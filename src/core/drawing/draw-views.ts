@@ -1,4 +1,4 @@
-import { axisIndex, groundAt, PROJECTION, type Axis, type Vec3, type View } from "../frames.ts";
+import { AXES, axisIndex, groundAt, PROJECTION, type Axis, type Vec3, type View } from "../frames.ts";
 import type { Gap } from "../gaps/gap.ts";
 import type { Layout } from "../layout/schema.ts";
 import { EDGE, nameRow, type Arrangement, type Placed } from "./arrange.ts";
@@ -77,6 +77,8 @@ function verticals(input: ViewsInput, frame: ViewFrame): { x: number; datum: She
   return lines;
 }
 
+/** Length of the arrow that says which way one looks at a section. */
+export const ARROW = 4.5;
 const CUT: SheetDatum = { key: "section", code: "A", name: "A", axis: "x", at: 0 };
 
 function drawDatums(pen: Pen, arrangement: Arrangement, input: ViewsInput, scenes: readonly Scene[], hand: Hand): string[] {
@@ -86,11 +88,11 @@ function drawDatums(pen: Pen, arrangement: Arrangement, input: ViewsInput, scene
   const main = scenes.filter((scene) => scene.placed.view !== "rear");
   if (main.length > 0) {
     const frame = main[0]!.frame;
-    const { labels, left } = stackLabels(verticals(input, frame).map(({ x, datum }) => ({ x, datum: datum ?? CUT })), size, arrangement.names.right, rowsFor(arrangement, scenes, hand));
+    const { labels, left } = stackLabels(verticals(input, frame).map(({ x, datum }) => (datum ? { x, datum } : { x, datum: CUT, leftward: ARROW })), size, arrangement.names.right, rowsFor(arrangement, scenes, hand));
     const titles = main.slice(1).map((scene) => ({ y: scene.placed.title[1], right: scene.placed.title[0] + textWidth(viewTitle(scene.placed.view, null, input.zero, input.units), hand.letters.head) }));
     const foot = Math.max(...main.map((scene) => scene.placed.box.bottom)) + 2.2;
     for (const label of labels) {
-      const top = arrangement.names.bottom - label.row * nameRow(hand) - size;
+      const top = arrangement.names.bottom - label.row * nameRow(hand) - size - 0.7;
       // the line stops for a view's title
       const stops = titles.filter((t) => label.x < t.right + 1).map((t): [number, number] => [t.y - hand.letters.head, t.y + 0.4 * hand.letters.head]);
       let y = top;
@@ -103,11 +105,11 @@ function drawDatums(pen: Pen, arrangement: Arrangement, input: ViewsInput, scene
         // thick ends of the plane, and which way one looks
         for (const [from, to] of [[top, top + 4], [foot - 4, foot]] as const) pen.line("section line", [label.x, from], [label.x, to], stroke(hand.pens.thick * 1.6));
         for (const at of [top + 0.2, foot - 0.2]) {
-          pen.line("section line", [label.x, at], [label.x - 4.5, at], stroke(hand.pens.thin));
-          pen.polyline("section line", [[label.x - 4.5, at], [label.x - 2.5, at - 0.55], [label.x - 2.5, at + 0.55]], true, null, INK);
+          pen.line("section line", [label.x, at], [label.x - ARROW, at], stroke(hand.pens.thin));
+          pen.polyline("section line", [[label.x - ARROW, at], [label.x - ARROW + 2, at - 0.55], [label.x - ARROW + 2, at + 0.55]], true, null, INK);
         }
       }
-      pen.text("datums", [label.x + LABEL_AIR, arrangement.names.bottom - label.row * nameRow(hand) - 0.25 * size], label.text, size, { ink: cutting ? INK : INDIGO, weight: cutting ? "bold" : "regular", of: label.datum.key });
+      pen.text("datums", [label.x + LABEL_AIR, arrangement.names.bottom - label.row * nameRow(hand) - 0.25 * size - 0.7], label.text, size, { ink: cutting ? INK : INDIGO, weight: cutting ? "bold" : "regular", of: label.datum.key });
     }
     if (left.length > 0) remarks.push(`No room for the lines of ${left.length} datums: ${left.map((d) => d.code).join(", ")}; they are in the table of datums.`);
     const off = input.datums.filter((d) => d.axis === "x" && !inReach(input, "x", d.at));
@@ -228,6 +230,8 @@ function drawNumbers(pen: Pen, input: ViewsInput, main: readonly Scene[], sectio
     input.gaps.slice(0, MARKED_GAPS).forEach((gap, index) => {
       if (gap.verdict === "clear" || gap.verdict === "tight") return;
       const middle = gap.pointA.map((a, i) => (a + gap.pointB[i]!) / 2) as unknown as Vec3;
+      // a report of another layout must not draw over the frame
+      if (AXES.some((axis, i) => !inReach(input, axis, middle[i]!))) return;
       const spread = shown.map(({ scene, tags }) => {
         const { u, v } = PROJECTION[scene.frame.view];
         return { scene, tags, length: Math.hypot(gap.pointA[u] - gap.pointB[u], gap.pointA[v] - gap.pointB[v]), at: onPaper(scene.frame, [middle[u], middle[v]]) };

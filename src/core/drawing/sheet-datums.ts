@@ -47,6 +47,8 @@ export interface DatumLabel {
   readonly datum: SheetDatum;
   /** Place of its line, mm of paper. */
   readonly x: number;
+  /** What its line reaches to the left at its top, mm: the arrow of a section. */
+  readonly leftward: number;
   readonly text: string;
   /** 0 stands nearest the drawing. */
   readonly row: number;
@@ -60,18 +62,18 @@ export const LABEL_AIR = 0.8;
  * row above every line that ends within its width. Names that would need more rows, or reach past `right`, become codes; where even that fails
  * they are left out (null rows are not returned).
  */
-export function stackLabels(lines: readonly { readonly datum: SheetDatum; readonly x: number }[], size: number, right: number, rows: number): { labels: DatumLabel[]; left: SheetDatum[] } {
+export function stackLabels(lines: readonly { readonly datum: SheetDatum; readonly x: number; readonly leftward?: number }[], size: number, right: number, rows: number): { labels: DatumLabel[]; left: SheetDatum[] } {
   const sorted = [...lines].sort((a, b) => a.x - b.x);
   const labels: DatumLabel[] = [];
   const left: SheetDatum[] = [];
   for (let i = sorted.length - 1; i >= 0; i--) {
-    const { datum, x } = sorted[i]!;
+    const { datum, x, leftward = 0 } = sorted[i]!;
     const place = (text: string): DatumLabel | null => {
       const end = x + LABEL_AIR + textWidth(text, size) + LABEL_AIR;
       if (end > right + LABEL_AIR) return null;
-      const under = labels.filter((label) => label.x <= end);
+      const under = labels.filter((label) => label.x - label.leftward <= end);
       const row = under.reduce((most, label) => Math.max(most, label.row + 1), 0);
-      return row < rows ? { datum, x, text, row } : null;
+      return row < rows ? { datum, x, leftward, text, row } : null;
     };
     const label = place(datum.name) ?? place(datum.code);
     if (label) labels.push(label);

@@ -130,7 +130,7 @@ export function runsTable(layout: Layout, units: SheetUnits): Table | null {
 export function figuresTable(layout: Layout, report: SheetReport, zero: Zero, units: SheetUnits): Table | null {
   const rows: Row[] = [];
   const names = namesOf(layout);
-  const governs = (key: string | undefined) => (key === undefined ? [] : [key === "body" ? "body line" : (names.get(key) ?? key)]);
+  const governs = (key: string | undefined) => (key === undefined ? [] : [key === "body" ? "body" : (names.get(key) ?? key)]);
   const add = (what: string, value: string, by: readonly string[] = []) => rows.push({ cells: [[what, ...by].join(", "), value] });
   const { body, mass, spaces } = report;
   if (body) {
@@ -164,7 +164,7 @@ export function figuresTable(layout: Layout, report: SheetReport, zero: Zero, un
   if (rows.length === 0) return null;
   return {
     title: "Figures", note: `as drawn, at ride height; ${units === "mm" ? "mm" : "inches"}`, rows,
-    columns: [{ head: "what, and what governs it", least: 25, wanted: longest(rows, 0, "what, and what governs it", 60) }, { head: "value", least: longest(rows, 1, "value", 14), wanted: 0, align: "right" }],
+    columns: [{ head: "what, governed by", least: 22, wanted: longest(rows, 0, "what, governed by", 60) }, { head: "value", least: longest(rows, 1, "value", 14), wanted: 0, align: "right" }],
   };
 }
 

@@ -2,7 +2,7 @@ import { groundAt, type Axis, type View } from "../frames.ts";
 import type { Layout } from "../layout/schema.ts";
 import { arrange, type Arrangement, type Reach, type Wanted } from "./arrange.ts";
 import { balloonRadius } from "./balloons.ts";
-import { drawViews, ordinateTexts, viewTitle, type ViewsInput } from "./draw-views.ts";
+import { ARROW, drawViews, ordinateTexts, viewTitle, type ViewsInput } from "./draw-views.ts";
 import { drawnItems, type DrawnItem } from "./drawn-items.ts";
 import { drawFrame } from "./frame.ts";
 import { CHECK_BAR } from "./furniture.ts";
@@ -84,8 +84,8 @@ export function planSheets(layout: Layout, report: SheetReport, options: SheetOp
   const title = titleArea(frame, hand, CHECK_BAR + 2 * MARGIN + 4);
   const content = inset(frame, MARGIN);
   const forViews = rect(content.left, content.top, content.right, title.top - 3);
-  const lines = datums.filter((d) => d.axis === "x" && d.at >= reach.x[0] && d.at <= reach.x[1]).map((datum) => ({ datum, at: datum.at }));
-  if (station !== null) lines.push({ datum: { key: "section", code: "A", name: "A", axis: "x", at: station }, at: station });
+  const lines = datums.filter((d) => d.axis === "x" && d.at >= reach.x[0] && d.at <= reach.x[1]).map((datum) => ({ datum, at: datum.at, leftward: 0 }));
+  if (station !== null) lines.push({ datum: { key: "section", code: "A", name: "A", axis: "x", at: station }, at: station, leftward: ARROW });
   const input: ViewsInput = { layout, items, gaps: report.gaps, datums, zero, units, station, reach };
   const longest = (axis: Axis): string => ordinateTexts(input, axis).reduce((a, b) => (b.length > a.length ? b : a), "");
   const wanted: Wanted = { views: ["plan", "side", "rear"], reach, nameRows: (scale) => nameRowsOf(lines, scale, hand), rearTitle: textWidth(viewTitle("rear", station, zero, units), hand.letters.head), ringRows: 1, longest: { x: longest("x"), y: longest("y"), z: longest("z") } };
@@ -222,8 +222,8 @@ function reachOf(layout: Layout, items: readonly DrawnItem[], station: number | 
 
 /** Most rows of datum names above a view. */
 const MOST_NAME_ROWS = 5;
-function nameRowsOf(lines: readonly { readonly datum: SheetDatum; readonly at: number }[], scale: number, hand: Hand): number {
-  const { labels } = stackLabels(lines.map(({ datum, at }) => ({ datum, x: at / scale })), hand.letters.dimension, Infinity, MOST_NAME_ROWS);
+function nameRowsOf(lines: readonly { readonly datum: SheetDatum; readonly at: number; readonly leftward: number }[], scale: number, hand: Hand): number {
+  const { labels } = stackLabels(lines.map(({ datum, at, leftward }) => ({ datum, x: at / scale, leftward })), hand.letters.dimension, Infinity, MOST_NAME_ROWS);
   return labels.reduce((most, label) => Math.max(most, label.row + 1), 0);
 }
 

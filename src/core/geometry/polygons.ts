@@ -1,4 +1,5 @@
 import type { Vec2 } from "../frames.ts";
+import { turnAt } from "./orientation.ts";
 
 /** Simple polygons in a plane, mm: corners in order, the first not repeated. */
 export type Outline = readonly Vec2[];
@@ -14,11 +15,6 @@ export function signedArea(outline: Outline): number {
     twice += (a[0] - ou) * (b[1] - ov) - (b[0] - ou) * (a[1] - ov);
   }
   return twice / 2;
-}
-
-/** Twice the signed area of the triangle o, a, b. */
-export function turnAt(o: Vec2, a: Vec2, b: Vec2): number {
-  return (a[0] - o[0]) * (b[1] - o[1]) - (a[1] - o[1]) * (b[0] - o[0]);
 }
 
 export interface OutlineFault {

@@ -124,7 +124,7 @@ function prismPieces(solid: Extract<Solid, { type: "prism" }>): Piece[] {
 
 type ViewOutline = { readonly name: "top" | "side" | "rear"; readonly outline: Outline; readonly axes: readonly [0 | 1 | 2, 0 | 1 | 2]; readonly hidden: 0 | 1 | 2 };
 
-function viewOutlines(solid: { readonly top?: Outline | undefined; readonly side?: Outline | undefined; readonly rear?: Outline | undefined }): ViewOutline[] {
+function viewOutlines(solid: Outlines): ViewOutline[] {
   const views: ViewOutline[] = [];
   if (solid.top) views.push({ name: "top", outline: solid.top, axes: [0, 1], hidden: 2 });
   if (solid.side) views.push({ name: "side", outline: solid.side, axes: [0, 2], hidden: 1 });
@@ -132,38 +132,78 @@ function viewOutlines(solid: { readonly top?: Outline | undefined; readonly side
   return views;
 }
 
+type Outlines = { readonly top?: Outline | undefined; readonly side?: Outline | undefined; readonly rear?: Outline | undefined };
+
+/** Cuts that are tried before an intricate solid is refused: about half a second's worth. */
+const MOST_CUTS = 10_000;
+
 /**
  * Convex pieces of the common volume of two or three outlines pushed through: polyhedra with exact corners. Slivers thinner than rounding
  * are left out; their volume is below 1e-9 of the whole.
- * @throws GeometryError for crossing outlines, fewer than two, or nothing in common
+ * @throws GeometryError for crossing outlines, fewer than two, nothing in common, or far too many pieces
  */
-export function outlinePolyhedra(solid: { readonly top?: Outline | undefined; readonly side?: Outline | undefined; readonly rear?: Outline | undefined }): Polyhedron[] {
+export function outlinePolyhedra(solid: Outlines): Polyhedron[] {
+  const pieces: Polyhedron[] = [];
+  for (const piece of commonPieces(solid)) {
+    pieces.push(piece);
+    if (pieces.length > 5 * MOST_PIECES) throw tooIntricate(`more than ${5 * MOST_PIECES}`);
+  }
+  const whole = pieces.reduce((sum, piece) => sum + volumeOf(piece), 0);
+  const kept = pieces.filter((piece) => volumeOf(piece) > 1e-9 * whole);
+  if (kept.length === 0) throw new GeometryError("", "the outlines have no volume in common: do they share one local origin?");
+  return kept;
+}
+
+/** True where two or three outlines, pushed through, have a volume in common. Outlines are taken to be simple. */
+export function haveCommonVolume(solid: Outlines): boolean {
+  for (const piece of commonPieces(solid)) if (volumeOf(piece) > 0) return true;
+  return false;
+}
+
+const tooIntricate = (found: string) => new GeometryError("", `cut into ${found} convex pieces, at most ${MOST_PIECES} are allowed: use fewer corners`);
+
+function* commonPieces(solid: Outlines): Generator<Polyhedron> {
   const views = viewOutlines(solid);
   if (views.length < 2) throw new GeometryError("", "outlines need at least two of top, side and rear");
   for (const view of views) checkOutline(view.name, view.outline);
-  const [first, second, third] = views as [ViewOutline, ViewOutline, ViewOutline?];
+  const first = views[0]!;
   const extent = reachAlong(views, first.hidden);
+  if (!(extent[1] > extent[0])) return;
   const size = Math.max(...views.flatMap((view) => [0, 1].map((k) => reach(view.outline, k as 0 | 1)[1] - reach(view.outline, k as 0 | 1)[0])));
   const slack = 1e-10 * size;
-  let solids: Polyhedron[] = convexPartsOf(first.outline).map((ring) => {
-    const at = (p: Vec2, depth: number) => at3(first.axes[0], p[0], first.axes[1], p[1], first.hidden, depth);
-    return prismOf(ring.map((p) => at(p, extent[0])), ring.map((p) => at(p, extent[1])));
-  });
-  for (const view of third ? [second, third] : [second]) {
-    const rings = convexPartsOf(view.outline);
-    const cut: Polyhedron[] = [];
-    for (const solid of solids) {
-      for (const ring of rings) {
-        const piece = cutByRing(solid, ring, view, slack);
-        if (piece.length > 0) cut.push(piece);
-      }
+  const tools = views.slice(1).map((view) => ({
+    view, rings: convexPartsOf(view.outline).map((ring) => ({ ring, reach: [reach(ring, 0), reach(ring, 1)] as const })),
+  }));
+  let cuts = 0;
+  function* cutOn(piece: Polyhedron, stage: number): Generator<Polyhedron> {
+    const tool = tools[stage];
+    if (!tool) {
+      yield piece;
+      return;
     }
-    solids = cut;
+    const [a, b] = tool.view.axes.map((axis) => reachOf(piece, axis)) as [[number, number], [number, number]];
+    for (const { ring, reach: [u, v] } of tool.rings) {
+      if (u[0] >= a[1] || u[1] <= a[0] || v[0] >= b[1] || v[1] <= b[0]) continue;
+      if (++cuts > MOST_CUTS) throw tooIntricate("far too many");
+      const common = cutByRing(piece, ring, tool.view, slack);
+      if (common.length > 0) yield* cutOn(common, stage + 1);
+    }
   }
-  const whole = solids.reduce((sum, s) => sum + volumeOf(s), 0);
-  const kept = solids.filter((s) => volumeOf(s) > 1e-9 * whole);
-  if (kept.length === 0) throw new GeometryError("", "the outlines have no volume in common: do they share one local origin?");
-  return kept;
+  for (const ring of convexPartsOf(first.outline)) {
+    const at = (p: Vec2, depth: number) => at3(first.axes[0], p[0], first.axes[1], p[1], first.hidden, depth);
+    yield* cutOn(prismOf(ring.map((p) => at(p, extent[0])), ring.map((p) => at(p, extent[1]))), 0);
+  }
+}
+
+function reachOf(piece: Polyhedron, axis: 0 | 1 | 2): [number, number] {
+  let [low, high] = [Infinity, -Infinity];
+  for (const face of piece) {
+    for (const p of face) {
+      low = Math.min(low, p[axis]);
+      high = Math.max(high, p[axis]);
+    }
+  }
+  return [low, high];
 }
 
 function cutByRing(solid: Polyhedron, ring: readonly Vec2[], view: ViewOutline, slack: number): Polyhedron {
@@ -210,7 +250,7 @@ function outlinePieces(solid: Extract<Solid, { type: "outlines" }>): Piece[] {
 }
 
 /** Outlines that do not agree: shared extents that differ by more than 1 mm. Findings in words, none when they agree. */
-export function outlineFindings(solid: { readonly top?: Outline | undefined; readonly side?: Outline | undefined; readonly rear?: Outline | undefined }): string[] {
+export function outlineFindings(solid: Outlines): string[] {
   const views = viewOutlines(solid);
   const findings: string[] = [];
   const names = ["length (x)", "width (y)", "height (z)"];
@@ -228,8 +268,8 @@ export function outlineFindings(solid: { readonly top?: Outline | undefined; rea
   return findings;
 }
 
-/** Volume of two or three outlines' common solid, mm3; exact. 0 where they have nothing in common. */
-export function outlineVolume(solid: { readonly top?: Outline | undefined; readonly side?: Outline | undefined; readonly rear?: Outline | undefined }): number {
+/** Volume of two or three outlines' common solid, mm3; exact to rounding. @throws GeometryError as outlinePolyhedra, also where they have nothing in common */
+export function outlineVolume(solid: Outlines): number {
   return outlinePolyhedra(solid).reduce((sum, s) => sum + volumeOf(s), 0);
 }
 

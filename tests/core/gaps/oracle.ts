@@ -1,4 +1,4 @@
-import type { Layout, Part, Run, Solid } from "../../../src/core/layout/schema.ts";
+import type { Layout, Part, Run, Shaft, Solid } from "../../../src/core/layout/schema.ts";
 
 /**
  * The ledger's numbers once more, by other means: no code of the kernel, of the gap folder or of the shapes is used, only the words of the layout format.
@@ -73,8 +73,58 @@ const along: Record<string, [V, V, V]> = {
   x: [[0, 1, 0], [0, 0, 1], [1, 0, 0]], y: [[0, 0, 1], [1, 0, 0], [0, 1, 0]], z: [[1, 0, 0], [0, 1, 0], [0, 0, 1]],
 };
 
-/** Solids that the oracle knows: convex ones, and prisms whose convex parts `cut` gives. */
-function shapesOf(solid: Solid, cut: (outline: readonly (readonly [number, number])[]) => readonly (readonly (readonly [number, number])[])[]): { frame: [V, V, V]; at: V; local: Pick<Shape, "nearest" | "reach" | "radius"> }[] {
+interface Placed { readonly frame: [V, V, V]; readonly at: V; readonly local: Pick<Shape, "nearest" | "reach" | "radius"> }
+
+/** A simple polygon as triangles, ear by ear; as it is where it is convex. */
+function convexPartsOf(outline: readonly (readonly [number, number])[]): (readonly (readonly [number, number])[])[] {
+  const turn = (a: readonly [number, number], b: readonly [number, number], c: readonly [number, number]) => (b[0] - a[0]) * (c[1] - b[1]) - (b[1] - a[1]) * (c[0] - b[0]);
+  const area = outline.reduce((sum, p, i) => sum + p[0] * outline[(i + 1) % outline.length]![1] - outline[(i + 1) % outline.length]![0] * p[1], 0);
+  const left = area > 0 ? [...outline] : [...outline].reverse();
+  const n = left.length;
+  if (left.every((p, i) => turn(p, left[(i + 1) % n]!, left[(i + 2) % n]!) >= 0)) return [left];
+  const ears: (readonly [number, number])[][] = [];
+  while (left.length > 3) {
+    const i = left.findIndex((p, k) => {
+      const [a, c] = [left[(k + left.length - 1) % left.length]!, left[(k + 1) % left.length]!];
+      if (turn(a, p, c) <= 0) return false;
+      return !left.some((q) => q !== a && q !== p && q !== c && turn(a, p, q) >= 0 && turn(p, c, q) >= 0 && turn(c, a, q) >= 0);
+    });
+    ears.push([left[(i + left.length - 1) % left.length]!, left[i]!, left[(i + 1) % left.length]!]);
+    left.splice(i, 1);
+  }
+  return [...ears, left];
+}
+
+/** The nearest point of a triangle: inside it, or on an edge. */
+function nearestOnTriangle(corners: readonly [V, V, V], p: V): V {
+  const [a, b, c] = corners;
+  const cross = (x: V, y: V): V => [x[1] * y[2] - x[2] * y[1], x[2] * y[0] - x[0] * y[2], x[0] * y[1] - x[1] * y[0]];
+  const n = unit(cross(sub(b, a), sub(c, a)));
+  const q = sub(p, times(n, dot(sub(p, a), n)));
+  const edges: [V, V][] = [[a, b], [b, c], [c, a]];
+  if (edges.every(([from, to]) => dot(cross(sub(to, from), sub(q, from)), n) >= 0)) return q;
+  return edges.map(([from, to]): V => {
+    const d = sub(to, from);
+    return add(from, times(d, clamp(dot(sub(p, from), d) / dot(d, d), 0, 1)));
+  }).reduce((best, here) => (size(sub(p, here)) < size(sub(p, best)) ? here : best));
+}
+
+function sheetShape(corners: readonly [V, V, V], r: number): Placed {
+  const middle = times(add(add(corners[0], corners[1]), corners[2]), 1 / 3);
+  const around = corners.map((c) => sub(c, middle)) as unknown as readonly [V, V, V];
+  return { frame: [[1, 0, 0], [0, 1, 0], [0, 0, 1]], at: middle, local: {
+    nearest: (p) => {
+      const q = nearestOnTriangle(around, p);
+      const d = size(sub(p, q));
+      return d <= r ? p : add(q, times(sub(p, q), r / d));
+    },
+    reach: (d) => Math.max(...around.map((c) => dot(c, d))) + r * size(d),
+    radius: Math.max(...around.map(size)) + r,
+  } };
+}
+
+/** Every solid but outlines of three views or with a top that is not a plain rectangle. */
+function shapesOf(solid: Solid): Placed[] {
   const world: [V, V, V] = [[1, 0, 0], [0, 1, 0], [0, 0, 1]];
   switch (solid.type) {
     case "box": {
@@ -108,16 +158,36 @@ function shapesOf(solid: Solid, cut: (outline: readonly (readonly [number, numbe
     }
     case "prism": {
       const frame: [V, V, V] = solid.plane === "xy" ? [[1, 0, 0], [0, 1, 0], [0, 0, 1]] : solid.plane === "xz" ? [[1, 0, 0], [0, 0, 1], [0, 1, 0]] : [[0, 1, 0], [0, 0, 1], [1, 0, 0]];
-      return cut(solid.outline).map((polygon) => ({ frame, at: [0, 0, 0] as V, local: prismOf(polygon, solid.from, solid.to) }));
+      return convexPartsOf(solid.outline).map((polygon) => ({ frame, at: [0, 0, 0] as V, local: prismOf(polygon, solid.from, solid.to) }));
     }
-    case "bar":
-      return [tubeBetween(solid.from, solid.to, solid.diameter!)];
+    case "bar": {
+      if (solid.size === undefined) return [tubeBetween(solid.from, solid.to, solid.diameter!)];
+      // width level, height upward; only for bars that lie, without roll
+      const k = unit(sub(solid.to, solid.from));
+      const level = unit([-k[1], k[0], 0]);
+      const up: V = [k[1] * level[2] - k[2] * level[1], k[2] * level[0] - k[0] * level[2], k[0] * level[1] - k[1] * level[0]];
+      const [w, h] = [solid.size[0] / 2, solid.size[1] / 2];
+      const half = size(sub(solid.to, solid.from)) / 2;
+      return [{ frame: [level, up, k], at: times(add(solid.from, solid.to), 0.5), local: prismOf([[-w, -h], [w, -h], [w, h], [-w, h]], -half, half) }];
+    }
+    case "sheet":
+      return solid.rows.slice(1).flatMap((row, i) => row.slice(1).flatMap((corner, j): Placed[] => {
+        const before = solid.rows[i]!;
+        return [sheetShape([before[j]!, before[j + 1]!, corner], solid.thickness / 2), sheetShape([before[j]!, corner, row[j]!], solid.thickness / 2)];
+      }));
+    case "outlines": {
+      const ys = solid.top!.map((p) => p[1]);
+      if (solid.rear || solid.top!.length !== 4 || new Set(ys).size !== 2 || new Set(solid.top!.map((p) => p[0])).size !== 2) throw new Error("the oracle knows outlines only as a side view between two planes");
+      const xs = solid.top!.map((p) => p[0]);
+      if (solid.side!.some((p) => p[0] < Math.min(...xs) || p[0] > Math.max(...xs))) throw new Error("the oracle wants a top that holds the side");
+      return convexPartsOf(solid.side!).map((polygon) => ({ frame: [[1, 0, 0], [0, 0, 1], [0, 1, 0]] as [V, V, V], at: [0, 0, 0] as V, local: prismOf(polygon, Math.min(...ys), Math.max(...ys)) }));
+    }
     default:
-      throw new Error(`the oracle does not know ${solid.type}`);
+      throw new Error(`the oracle does not know ${(solid as Solid).type}`);
   }
 }
 
-function tubeBetween(from: V, to: V, diameter: number): { frame: [V, V, V]; at: V; local: Pick<Shape, "nearest" | "reach" | "radius"> } {
+function tubeBetween(from: V, to: V, diameter: number): Placed {
   const k = unit(sub(to, from));
   const i = unit(Math.abs(k[0]) < 0.7 ? [0, k[2], -k[1]] : [-k[2], 0, k[0]]);
   const j: V = [k[1] * i[2] - k[2] * i[1], k[2] * i[0] - k[0] * i[2], k[0] * i[1] - k[1] * i[0]];
@@ -136,11 +206,9 @@ export class Oracle {
   private readonly movement = new Map<string, { low: V; high: V }>();
   private readonly carrier = new Map<string, string | null>();
   private readonly layout: Layout;
-  private readonly cut: (outline: readonly (readonly [number, number])[]) => readonly (readonly (readonly [number, number])[])[];
 
-  constructor(layout: Layout, cut: (outline: readonly (readonly [number, number])[]) => readonly (readonly (readonly [number, number])[])[] = (outline) => [outline]) {
+  constructor(layout: Layout) {
     this.layout = layout;
-    this.cut = cut;
     for (const item of [...layout.parts, ...layout.runs]) {
       const m = item.movement;
       this.movement.set(item.key, { low: [m.x[0], m.y[0], m.z[0]], high: [m.x[1], m.y[1], m.z[1]] });
@@ -153,7 +221,36 @@ export class Oracle {
         this.things.push({ key: `${part.key}.${room.key}`, kind: "room", group: "", hot: false, limited: false, owner: part.key, scalar: 0, bits });
       }
     }
+    for (const name of ["front-left", "front-right", "rear-left", "rear-right"] as const) if (!this.carrier.has(`tyre-${name}`)) this.things.push(this.tyreThing(name));
     for (const run of layout.runs) this.things.push(this.runThing(run));
+    for (const shaft of layout.shafts) if (shaft.diameter !== undefined) this.things.push(this.shaftThing(shaft));
+  }
+
+  private tyreThing(name: string): OracleThing {
+    const { chassis } = this.layout;
+    const axle = name.startsWith("front") ? chassis.front : chassis.rear;
+    const key = `tyre-${name}`;
+    this.movement.set(key, { low: [0, 0, -axle.droop], high: [0, 0, axle.bump] });
+    this.carrier.set(key, null);
+    const at: V = [name.startsWith("front") ? 0 : chassis.wheelbase, (name.endsWith("left") ? -axle.track : axle.track) / 2, axle.tyre.loadedRadius - axle.rideHeight];
+    const shape = { at, axes: along["y"]!, ...revolved(axle.tyre.diameter / 2, axle.tyre.diameter / 2, axle.tyre.width / 2) };
+    return { key, kind: "tyre", group: "", hot: false, limited: false, owner: key, scalar: 0, bits: [{ shape, carried: [[key]], growth: 0, spares: new Set(), bigger: null }] };
+  }
+
+  /** The outboard joint goes with the wheel, and inward by what an arm's swing takes at the greater travel. */
+  private shaftThing(shaft: Shaft): OracleThing {
+    const tyre = shaft.wheel === undefined ? null : `tyre-${shaft.wheel}`;
+    const carried: string[][] = [[]];
+    if (tyre !== null) {
+      const { low, high } = this.movement.get(tyre)!;
+      const t = Math.max(-low[2], high[2]);
+      const inward = shaft.arm === undefined ? 0 : shaft.arm - Math.sqrt(Math.max(0, shaft.arm ** 2 - t ** 2));
+      const toRight = shaft.inboard[1] > shaft.outboard[1];
+      this.movement.set(`${shaft.key}'s arm`, { low: [0, toRight ? 0 : -inward, 0], high: [0, toRight ? inward : 0, 0] });
+      carried.push([`${shaft.key}'s arm`, ...this.carriage(tyre)]);
+    }
+    const { frame, at, local } = tubeBetween(shaft.inboard, shaft.outboard, shaft.diameter!);
+    return { key: shaft.key, kind: "shaft", group: "", hot: false, limited: false, owner: shaft.key, scalar: 0, bits: [{ shape: { at, axes: frame, ...local }, carried, growth: 0, spares: new Set(), bigger: null }] };
   }
 
   private carriage(key: string): string[] {
@@ -163,7 +260,7 @@ export class Oracle {
   }
 
   private placed(solid: Solid, part: Part): Shape[] {
-    return shapesOf(solid, this.cut).map(({ frame, at, local }) => {
+    return shapesOf(solid).map(({ frame, at, local }) => {
       const place = (v: V) => turned(turned(v, solid.turn), part.turn);
       const centre = add(turned(add(turned(at, solid.turn), solid.at), part.turn), part.at);
       return { at: centre, axes: [place(frame[0]), place(frame[1]), place(frame[2])] as Axes, ...local };
@@ -182,67 +279,108 @@ export class Oracle {
     return { key: part.key, kind: part.kind, group: part.group, hot: part.heat?.surface !== undefined, limited: part.heat?.limit !== undefined, owner: part.key, scalar: typeof part.source.plusMinus === "number" ? part.source.plusMinus : 0, bits };
   }
 
-  /** A chain of nodes only, every bend fitting its legs. */
+  /** Legs as centre lines with the place along the leg, half of the arc at either end. */
   private runThing(run: Run): OracleThing {
-    const n = run.nodes.length;
-    const at = run.nodes.map((node) => node.at as V);
-    const way = at.slice(1).map((p, i) => unit(sub(p, at[i]!)));
-    const bend = run.nodes.map((node, i) => {
-      if (i === 0 || i === n - 1) return { tangent: 0, angle: 0, radius: 0 };
-      const angle = Math.acos(clamp(dot(way[i - 1]!, way[i]!), -1, 1));
-      const radius = node.bend ?? run.bendRadius;
-      return { tangent: radius * Math.tan(angle / 2), angle, radius };
+    const at = new Map(run.nodes.map((node) => [node.key, node.at as V]));
+    const legs = (run.legs.length > 0 ? run.legs : run.nodes.slice(1).map((node, i) => ({ from: run.nodes[i]!.key, to: node.key, diameter: undefined }))).map((leg) => ({ from: leg.from, to: leg.to, diameter: leg.diameter ?? run.diameter }));
+    const at2 = (leg: { from: string; to: string }, node: string) => (leg.from === node ? leg.to : leg.from);
+    const legsAt = (node: string) => legs.filter((leg) => leg.from === node || leg.to === node);
+    const turnAt = (node: string): number => {
+      const here = legsAt(node);
+      if (here.length !== 2) return 0;
+      const [u, v] = here.map((leg) => unit(sub(at.get(at2(leg, node))!, at.get(node)!))) as [V, V];
+      return Math.PI - Math.acos(clamp(dot(u, v), -1, 1));
+    };
+    const asked = (node: string) => (run.nodes.find((one) => one.key === node)!.bend ?? run.bendRadius) * Math.tan(turnAt(node) / 2);
+    /** Tangents that do not fit a leg are scaled by one factor; a node takes the smaller of its two. */
+    const fit = (leg: { from: string; to: string }) => Math.min(1, size(sub(at.get(leg.to)!, at.get(leg.from)!)) / Math.max(1e-12, asked(leg.from) + asked(leg.to)));
+    /** Half an arc, from the straight to the middle of the bend. */
+    const halfArc = (leg: { from: string; to: string }, node: string): { tangent: number; length: number; place: (share: number) => V } => {
+      const none = { tangent: 0, length: 0, place: () => at.get(node)! };
+      const turn = turnAt(node);
+      const tangent = asked(node) * Math.min(...legsAt(node).map(fit));
+      if (turn < 1e-6 || tangent === 0) return none;
+      const other = legsAt(node).find((one) => one !== leg)!;
+      const u = unit(sub(at.get(at2(leg, node))!, at.get(node)!));
+      const v = unit(sub(at.get(at2(other, node))!, at.get(node)!));
+      const r = tangent / Math.tan(turn / 2);
+      const centre = add(at.get(node)!, times(unit(add(u, v)), r / Math.cos(turn / 2)));
+      const start = add(at.get(node)!, times(u, tangent));
+      const e = unit(sub(start, centre));
+      return { tangent, length: (r * turn) / 2, place: (share) => add(centre, add(times(e, r * Math.cos((share * turn) / 2)), times(u, -r * Math.sin((share * turn) / 2)))) };
+    };
+    const lines = legs.map((leg) => {
+      const [a, b] = [halfArc(leg, leg.from), halfArc(leg, leg.to)];
+      const [p, q] = [at.get(leg.from)!, at.get(leg.to)!];
+      const straight = Math.max(0, size(sub(q, p)) - a.tangent - b.tangent);
+      const way = unit(sub(q, p));
+      const length = a.length + straight + b.length;
+      const start = add(p, times(way, a.tangent));
+      const place = (t: number): V => (t < a.length ? a.place(1 - t / a.length) : t > length - b.length ? b.place(1 - (length - t) / b.length) : add(start, times(way, t - a.length)));
+      return { leg, length, place, arcs: [a.length, length - b.length] as const };
     });
-    // the centre line as points with their path length; a node of a bend is at the middle of its arc
-    const points: { p: V; s: number; leg: number }[] = [{ p: at[0]!, s: 0, leg: 0 }];
-    const nodeAt = [0];
-    let s = 0;
-    for (let i = 1; i < n; i++) {
-      const straight = size(sub(at[i]!, at[i - 1]!)) - bend[i - 1]!.tangent - bend[i]!.tangent;
-      const from = points[points.length - 1]!.p;
-      const steps = Math.max(1, Math.ceil(straight / 5));
-      for (let k = 1; k <= steps; k++) points.push({ p: add(from, times(way[i - 1]!, (straight * k) / steps)), s: s + (straight * k) / steps, leg: i - 1 });
-      s += straight;
-      const { angle, radius } = bend[i]!;
-      if (i < n - 1 && angle > 1e-9 && radius > 0) {
-        const start = points[points.length - 1]!.p;
-        const inward = unit(sub(way[i]!, times(way[i - 1]!, dot(way[i]!, way[i - 1]!))));
-        const centre = add(start, times(inward, radius));
-        const arcSteps = 2 * Math.ceil(angle * radius);
-        for (let k = 1; k <= arcSteps; k++) {
-          const a = (angle * k) / arcSteps;
-          points.push({ p: add(centre, add(times(way[i - 1]!, radius * Math.sin(a)), times(inward, -radius * Math.cos(a)))), s: s + radius * a, leg: k <= arcSteps / 2 ? i - 1 : i });
+    /** Path length from one node to every other. */
+    const lengthsFrom = (node: string) => {
+      const out = new Map([[node, 0]]);
+      for (let again = true; again;) {
+        again = false;
+        for (const { leg, length } of lines) for (const [p, q] of [[leg.from, leg.to], [leg.to, leg.from]] as const) {
+          if (out.has(p) && !out.has(q)) {
+            out.set(q, out.get(p)! + length);
+            again = true;
+          }
         }
-        nodeAt.push(s + (radius * angle) / 2);
-        s += radius * angle;
-      } else nodeAt.push(s);
-    }
-    const carried = run.nodes.map((node) => this.carriage(node.on === undefined ? run.key : node.on.split(".")[0]!));
-    const growing = run.heat?.surface !== undefined && run.material !== undefined && run.anchor !== undefined;
-    const anchorAt = growing ? nodeAt[run.nodes.findIndex((node) => node.key === run.anchor)]! : 0;
-    const rate = growing ? alpha304(run.heat!.surface!) * (run.heat!.surface! - 20) : 0;
-    const spared: { owner: string; from: number; to: number }[] = [];
-    run.nodes.forEach((node, i) => {
-      if (node.on !== undefined) spared.push({ owner: node.on.split(".")[0]!, from: nodeAt[i]! - 2 * run.diameter, to: nodeAt[i]! + 2 * run.diameter });
-      if (node.clip !== undefined) spared.push({ owner: node.clip, from: nodeAt[i]! - 50, to: nodeAt[i]! + 50 });
+      }
+      return out;
+    };
+    const awayFrom = (from: Map<string, number>, line: (typeof lines)[number], t: number) => Math.min(from.get(line.leg.from)! + t, from.get(line.leg.to)! + line.length - t);
+    const spared = run.nodes.flatMap((node) => {
+      const widest = Math.max(...legsAt(node.key).map((leg) => leg.diameter));
+      return [...(node.on === undefined ? [] : [{ owner: node.on.split(".")[0]!, reach: 2 * widest }]), ...(node.clip === undefined ? [] : [{ owner: node.clip, reach: 50 }])].map((one) => ({ ...one, from: lengthsFrom(node.key) }));
     });
+    const growing = run.heat?.surface !== undefined && run.material === "304" && run.anchor !== undefined;
+    const rate = growing ? Math.abs(alpha304(run.heat!.surface!) * (run.heat!.surface! - 20)) : 0;
+    const fromAnchor = growing ? lengthsFrom(run.anchor!) : null;
+    const carriedAt = (node: string) => {
+      const on = run.nodes.find((one) => one.key === node)!.on;
+      return this.carriage(on === undefined ? run.key : on.split(".")[0]!);
+    };
     const bits: Bit[] = [];
-    for (let k = 0; k + 1 < points.length; k++) {
-      const a = points[k]!;
-      const b = points[k + 1]!;
-      // cut where an exemption begins or ends
-      const marks = [a.s, ...spared.flatMap((one) => [one.from, one.to]).filter((m) => m > a.s + 1e-9 && m < b.s - 1e-9).sort((x, y) => x - y), b.s];
-      for (let m = 0; m + 1 < marks.length; m++) {
-        if (marks[m + 1]! - marks[m]! < 1e-9) continue;
-        const place = (t: number) => add(a.p, times(sub(b.p, a.p), (t - a.s) / (b.s - a.s)));
-        const { frame, at: centre, local } = tubeBetween(place(marks[m]!), place(marks[m + 1]!), run.diameter);
-        const middle = (marks[m]! + marks[m + 1]!) / 2;
-        const spares = new Set(spared.filter((one) => middle > one.from && middle < one.to).map((one) => one.owner));
-        const growth = rate * Math.max(Math.abs(marks[m]! - anchorAt), Math.abs(marks[m + 1]! - anchorAt));
-        bits.push({ shape: { at: centre, axes: frame, ...local }, carried: [carried[b.leg]!, carried[b.leg + 1]!], growth, spares, bigger: this.bigger(run.source, WORLD) });
+    for (const line of lines) {
+      const step = growing ? 5 : 60;
+      const marks = new Set<number>([0, line.length]);
+      const edges = [0, line.length];
+      const [arcA, arcB] = line.arcs;
+      for (let k = 0, n = Math.ceil(arcA); k <= n; k++) marks.add((arcA * k) / Math.max(1, n));
+      for (let k = 0, n = Math.ceil(line.length - arcB); k <= n; k++) marks.add(arcB + ((line.length - arcB) * k) / Math.max(1, n));
+      for (let k = 1, n = Math.ceil((arcB - arcA) / step); k < n; k++) marks.add(arcA + ((arcB - arcA) * k) / n);
+      for (const { reach, from } of spared) {
+        for (const t of [reach - from.get(line.leg.from)!, line.length - (reach - from.get(line.leg.to)!)]) edges.push(t);
+      }
+      // a sliver at every edge, so that its end stands square to the arc and not to a chord
+      for (const t of edges) for (const at of [t - 0.05, t, t + 0.05]) if (at > 0 && at < line.length) marks.add(at);
+      const sorted = [...marks].sort((x, y) => x - y);
+      const carried = [carriedAt(line.leg.from), carriedAt(line.leg.to)];
+      for (let k = 0; k + 1 < sorted.length; k++) {
+        const [t0, t1] = [sorted[k]!, sorted[k + 1]!];
+        if (t1 - t0 < 1e-9) continue;
+        const { frame, at: centre, local } = tubeBetween(line.place(t0), line.place(t1), line.leg.diameter);
+        const middle = (t0 + t1) / 2;
+        const spares = new Set(spared.filter((one) => awayFrom(one.from, line, middle) < one.reach).map((one) => one.owner));
+        const growth = fromAnchor === null ? 0 : rate * Math.max(awayFrom(fromAnchor, line, t0), awayFrom(fromAnchor, line, t1));
+        bits.push({ shape: { at: centre, axes: frame, ...local }, carried, growth, spares, bigger: this.bigger(run.source, WORLD) });
       }
     }
-    return { key: run.key, kind: run.kind, group: run.group, hot: run.heat?.surface !== undefined, limited: run.heat?.limit !== undefined, owner: run.key, scalar: typeof run.source.plusMinus === "number" ? run.source.plusMinus : 0, bits };
+    for (const node of run.nodes) {
+      const here = legsAt(node.key);
+      if (here.length < 3) continue;
+      const r = Math.max(...here.map((leg) => leg.diameter)) / 2;
+      const spares = new Set(spared.filter((one) => one.from.get(node.key)! <= one.reach).map((one) => one.owner));
+      const shape: Shape = { at: node.at, axes: WORLD, nearest: (p) => (size(p) <= r ? p : times(p, r / size(p))), reach: (d) => r * size(d), radius: r };
+      bits.push({ shape, carried: [carriedAt(node.key)], growth: fromAnchor === null ? 0 : rate * fromAnchor.get(node.key)!, spares, bigger: this.bigger(run.source, WORLD) });
+    }
+    const hot = run.heat?.surface !== undefined || run.nodes.some((node) => node.surface !== undefined);
+    return { key: run.key, kind: run.kind, group: run.group, hot, limited: run.heat?.limit !== undefined, owner: run.key, scalar: typeof run.source.plusMinus === "number" ? run.source.plusMinus : 0, bits };
   }
 
   /** How b may move against a: what carries only one of the two counts. */
@@ -266,28 +404,46 @@ export class Oracle {
   /** Drawn and worst distance of two things, nearer bits first; Infinity where worst is beyond `reach`. */
   measure(a: OracleThing, b: OracleThing, reach: number): { drawn: number; worst: number } {
     const grow = (one: Bit) => (one.bigger ? size([0, 1, 2].map((k) => Math.max(-one.bigger!.low[k]!, one.bigger!.high[k]!)) as V) : 0);
-    const pairs = a.bits.filter((p) => !p.spares.has(b.owner)).flatMap((p) => b.bits.filter((q) => !q.spares.has(a.owner)).map((q) => {
-      const boxes = p.carried.flatMap((x) => q.carried.map((y) => this.travel(x, y)));
-      const low = [0, 1, 2].map((k) => Math.min(...boxes.map((box) => box.low[k]!))) as V;
-      const high = [0, 1, 2].map((k) => Math.max(...boxes.map((box) => box.high[k]!))) as V;
-      const less = p.growth + q.growth + a.scalar + b.scalar;
-      const apart = size(sub(p.shape.at, q.shape.at)) - p.shape.radius - q.shape.radius;
-      const most = size([0, 1, 2].map((k) => Math.max(-low[k]!, high[k]!)) as V) + grow(p) + grow(q);
-      return { p, q, low, high, less, apart, least: apart - most - less };
-    }));
+    // the most that anything here may give, so that what is far is not looked into
+    const all = (one: Bit) => one.growth + grow(one) + Math.max(...one.carried.map((chain) => chain.reduce((sum, key) => sum + size(this.movement.get(key)!.low) + size(this.movement.get(key)!.high), 0)));
+    const most = Math.max(0, ...a.bits.map(all)) + Math.max(0, ...b.bits.map(all)) + a.scalar + b.scalar;
+    const hulls = new Map<readonly Carriage[], Map<readonly Carriage[], { low: V; high: V }>>();
+    const hullOf = (mine: readonly Carriage[], others: readonly Carriage[]) => {
+      let row = hulls.get(mine);
+      if (!row) hulls.set(mine, (row = new Map()));
+      let hull = row.get(others);
+      if (!hull) {
+        const boxes = mine.flatMap((x) => others.map((y) => this.travel(x, y)));
+        hull = { low: [0, 1, 2].map((k) => Math.min(...boxes.map((box) => box.low[k]!))) as V, high: [0, 1, 2].map((k) => Math.max(...boxes.map((box) => box.high[k]!))) as V };
+        row.set(others, hull);
+      }
+      return hull;
+    };
+    const pairs: { p: Bit; q: Bit; low: V; high: V; less: number; apart: number; least: number }[] = [];
+    for (const p of a.bits) {
+      if (p.spares.has(b.owner)) continue;
+      for (const q of b.bits) {
+        if (q.spares.has(a.owner)) continue;
+        const apart = size(sub(p.shape.at, q.shape.at)) - p.shape.radius - q.shape.radius;
+        if (apart > reach + most) continue;
+        const { low, high } = hullOf(p.carried, q.carried);
+        const less = p.growth + q.growth + a.scalar + b.scalar;
+        pairs.push({ p, q, low, high, less, apart, least: apart - less - size([0, 1, 2].map((k) => Math.max(-low[k]!, high[k]!)) as V) - grow(p) - grow(q) });
+      }
+    }
     let worst = Infinity;
     for (const { p, q, low, high, less, least } of pairs.sort((x, y) => x.least - y.least)) {
       if (least > Math.min(worst, reach)) break;
       const shifts: Shift[] = [{ axes: WORLD, low, high }];
       if (q.bigger) shifts.push(q.bigger);
       if (p.bigger) shifts.push({ axes: p.bigger.axes, low: times(p.bigger.high, -1), high: times(p.bigger.low, -1) });
-      worst = Math.min(worst, leastDistance(p.shape, q.shape, shifts) - less);
+      worst = Math.min(worst, leastDistance(p.shape, q.shape, shifts, worst + less) - less);
     }
     let drawn = Infinity;
     if (worst > reach) return { drawn, worst: Infinity };
     for (const { p, q, apart } of pairs.sort((x, y) => x.apart - y.apart)) {
       if (apart > drawn) break;
-      drawn = Math.min(drawn, leastDistance(p.shape, q.shape, []));
+      drawn = Math.min(drawn, leastDistance(p.shape, q.shape, [], drawn));
     }
     return { drawn, worst };
   }
@@ -330,9 +486,9 @@ interface Shift { readonly axes: Axes; readonly low: V; readonly high: V }
 
 /**
  * Signed: apart by descent in turns until the slab between the two points proves it to 1e-3 mm, overlapping by sampled directions
- * (never less deep than the truth).
+ * (never less deep than the truth). Infinity where it is proven to be more than `enough`.
  */
-function leastDistance(a: Shape, b: Shape, shifts: readonly Shift[]): number {
+function leastDistance(a: Shape, b: Shape, shifts: readonly Shift[], enough: number): number {
   const by = shifts.map((): V => [0, 0, 0]);
   const nearest = (shape: Shape, p: V): V => add(shape.at, toWorld(shape.axes, shape.nearest(toLocal(shape.axes, sub(p, shape.at)))));
   let pb = b.at;
@@ -353,6 +509,7 @@ function leastDistance(a: Shape, b: Shape, shifts: readonly Shift[]): number {
     if (gap < 1e-5) break;
     proven = Math.max(proven, -widthAlong(a, b, shifts, times(apart, 1 / gap)));
     if (gap - proven < 1e-3) return gap;
+    if (proven > enough) return Infinity;
     if (turn > 100_000 && proven > 0) throw new Error(`the descent has not ended: between ${proven} and ${gap}`);
   }
   return -depthOf(a, b, shifts);

@@ -15,9 +15,8 @@ type RunInput = NonNullable<LayoutInput["runs"]>[number];
 
 const tyre = { diameter: 600, width: 200, loadedRadius: 290 };
 
-/** An L, whose two convex parts are plain. */
-export const ELL: [number, number][] = [[0, 0], [90, 0], [90, 30], [30, 30], [30, 80], [0, 80]];
-export const ELL_PARTS: [number, number][][] = [[[0, 0], [90, 0], [90, 30], [0, 30]], [[0, 0], [30, 0], [30, 80], [0, 80]]];
+/** An L: not convex. */
+const ELL: [number, number][] = [[0, 0], [90, 0], [90, 30], [30, 30], [30, 80], [0, 80]];
 
 /** A crowded corner of a car, far from its tyres: parts of every plain kind of solid, carriers, movement, tolerances, rooms, bound and clipped runs, a hot pipe. */
 export function randomLayout(seed: number): Layout {
