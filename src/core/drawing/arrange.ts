@@ -12,7 +12,8 @@ export interface Wanted {
   /** Rows of datum names above the views. */
   readonly nameRows: (scale: number) => number;
   readonly ringRows: 1 | 2;
-  /** Width of the rear view's title, mm. */
+  /** Widths of the titles of side and rear view, which stand in one row, mm. */
+  readonly sideTitle: number;
   readonly rearTitle: number;
   /** Longest value that a dimension may show on each axis, as text. */
   readonly longest: Readonly<Record<Axis, string>>;
@@ -63,7 +64,7 @@ export function arrange(wanted: Wanted, scale: number, area: Rect, hand: Hand): 
   const mainWidth = main ? size("x") : 0;
   const sideLabels = main ? 3 + Math.max(has("plan") ? reachOf("y") : 0, has("side") ? reachOf("z") : 0) : 0;
   const left = area.left + 2;
-  const rearLeft = main ? left + mainWidth + sideLabels + 8 : left;
+  const rearLeft = main ? Math.max(left + mainWidth + sideLabels + 8, has("side") ? area.left + wanted.sideTitle + 4 : 0) : left;
   const rearLabels = main ? 0 : 3 + reachOf("z");
   const right = has("rear") ? rearLeft + size("y") + rearLabels : left + mainWidth + sideLabels;
   if (Math.max(right, has("rear") ? rearLeft + wanted.rearTitle : 0) > area.right + 1e-6) return null;

@@ -16,42 +16,63 @@ interface Sample {
   readonly tag?: "disc" | "square";
 }
 
+/** What stands in the foot besides the remarks, mm of height. */
+interface Standing {
+  /** Of the check bar and the cautions. */
+  readonly below: number;
+  /** Of the cautions alone. */
+  readonly cautions: number;
+  readonly cautionsWidth: number;
+  /** True where the cautions stand beside the check bar. */
+  readonly beside: boolean;
+  readonly all: number;
+}
+
+const pitchOf = (size: number): number => 1.4 * size;
+const linesHigh = (paragraphs: readonly string[], width: number, size: number): number => paragraphs.reduce((sum, p) => sum + wrap(p, charactersIn(width, size)).length, 0) * pitchOf(size);
+
+function standingIn(width: number, hand: Hand, drawing: { readonly datumNames: string } | null): Standing {
+  const size = hand.letters.note;
+  const bar = drawing ? size + 6.5 : 0;
+  const beside = drawing !== null && width > CHECK_BAR + 8 + 60 * 0.6 * size;
+  const cautionsWidth = beside ? width - CHECK_BAR - 8 : width;
+  const cautions = linesHigh(CAUTIONS, cautionsWidth, size);
+  const below = beside ? Math.max(bar, cautions) : bar + cautions + (drawing ? 0.6 * size : 0);
+  const keyRows = drawing ? keyLines(width, hand) : 0;
+  return { below, cautions, cautionsWidth, beside, all: below + keyRows * KEY_PITCH * size + linesHigh(aboutOf(drawing), width, size) + 1.2 * size };
+}
+const aboutOf = (drawing: { readonly datumNames: string } | null): string[] => (drawing && drawing.datumNames !== "" ? [drawing.datumNames] : []);
+
+/** Height that a foot of this width needs at least, mm: key, check bar and cautions, and one line that counts the remarks left out. */
+export const footHeight = (width: number, hand: Hand, drawing: { readonly datumNames: string } | null): number => standingIn(width, hand, drawing).all + pitchOf(hand.letters.note);
+
 /**
  * Foot of the sheet left of the title block, standing on its lower edge: key of lines, remarks, then the check bar with the cautions beside it (above it
- * on narrow sheets). Returns its upper edge, never above the area: remarks that find no room are counted in the last line.
+ * on narrow sheets). Returns its upper edge, which is above the area only where the area is lower than footHeight: remarks that find no room are counted
+ * in the last line.
  * @param datumNames what the codes beside dimensions mean
  */
 export function drawFoot(pen: Pen, area: Rect, remarks: readonly string[], hand: Hand, drawing: { readonly datumNames: string } | null): number {
   const size = hand.letters.note;
   const width = area.right - area.left;
-  const pitch = 1.4 * size;
-  const linesIn = (paragraphs: readonly string[], room: number) => paragraphs.reduce((sum, p) => sum + wrap(p, charactersIn(room, size)).length, 0) * pitch;
-  const bar = drawing ? size + 6.5 : 0;
-  const beside = drawing !== null && width > CHECK_BAR + 8 + 60 * 0.6 * size;
-  const cautionsWidth = beside ? width - CHECK_BAR - 8 : width;
-  const cautions = linesIn(CAUTIONS, cautionsWidth);
-  const below = beside ? Math.max(bar, cautions) : bar + cautions + (drawing ? 0.6 * size : 0);
-  const keyRows = drawing ? keyLines(width, hand) : 0;
-  const about = drawing && drawing.datumNames !== "" ? [drawing.datumNames] : [];
-  const standing = below + keyRows * KEY_PITCH * size + linesIn(about, width) + 1.2 * size;
-
-  const room = area.bottom - area.top - standing;
+  const standing = standingIn(width, hand, drawing);
+  const room = area.bottom - area.top - standing.all;
   const all = remarks.map(sheetText);
   const said: string[] = [];
   for (const remark of all) {
     const last = said.length === all.length - 1;
-    if (linesIn([...said, remark], width) + (last ? 0 : pitch) > room) break;
+    if (linesHigh([...said, remark], width, size) + (last ? 0 : pitchOf(size)) > room) break;
     said.push(remark);
   }
   const unsaid = all.length - said.length;
   if (unsaid > 0) said.push(`${unsaid} more ${unsaid === 1 ? "remark is" : "remarks are"} shown on the screen.`);
-  const top = area.bottom - standing - linesIn(said, width);
+  const top = area.bottom - standing.all - linesHigh(said, width, size);
   let y = top;
   if (drawing) y = drawKey(pen, { ...area, top: y }, hand);
-  y = drawLines(pen, "key", [area.left, y + size], width, about, size, PENCIL);
+  y = drawLines(pen, "key", [area.left, y + size], width, aboutOf(drawing), size, PENCIL);
   drawLines(pen, "remarks", [area.left, y], width, said, size, INK);
-  const first = area.bottom - below + size;
-  drawLines(pen, "cautions", [beside ? area.left + CHECK_BAR + 8 : area.left, beside ? area.bottom - cautions + size : first], cautionsWidth, CAUTIONS, size, INK);
+  const first = area.bottom - standing.below + size;
+  drawLines(pen, "cautions", [standing.beside ? area.left + CHECK_BAR + 8 : area.left, standing.beside ? area.bottom - standing.cautions + size : first], standing.cautionsWidth, CAUTIONS, size, INK);
   if (drawing) drawCheckBar(pen, [area.left, area.bottom - 2.7], hand);
   return top;
 }

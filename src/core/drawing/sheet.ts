@@ -6,7 +6,7 @@ import { ARROW, drawViews, ordinateTexts, viewTitle, type ViewsInput } from "./d
 import { drawnItems, type DrawnItem } from "./drawn-items.ts";
 import { drawFrame } from "./frame.ts";
 import { CHECK_BAR } from "./furniture.ts";
-import { drawFoot } from "./foot.ts";
+import { drawFoot, footHeight } from "./foot.ts";
 import { textWidth } from "./lettering.ts";
 import { findTextOverlaps } from "./overlaps.ts";
 import { frameOf, HAND, inset, type Hand, PAPER_SIZES, rect, STANDARD_SCALES, widthOf, type PaperName, type Rect } from "./paper.ts";
@@ -83,12 +83,15 @@ export function planSheets(layout: Layout, report: SheetReport, options: SheetOp
   const frame = frameOf(paper);
   const title = titleArea(frame, hand, CHECK_BAR + 2 * MARGIN + 4);
   const content = inset(frame, MARGIN);
-  const forViews = rect(content.left, content.top, content.right, title.top - 3);
+  const codes = datums.filter((d) => d.axis !== "x" && d.at >= reach[d.axis][0] && d.at <= reach[d.axis][1]).map((d) => `${d.code} ${d.name}`);
+  const about = { datumNames: codes.length === 0 ? "" : `Datums: ${codes.join(", ")}.` };
+  const footRight = title.left - 4;
+  const forViews = rect(content.left, content.top, content.right, Math.min(title.top, content.bottom - footHeight(footRight - content.left, hand, about)) - 3);
   const lines = datums.filter((d) => d.axis === "x" && d.at >= reach.x[0] && d.at <= reach.x[1]).map((datum) => ({ datum, at: datum.at, leftward: 0 }));
   if (station !== null) lines.push({ datum: { key: "section", code: "A", name: "A", axis: "x", at: station }, at: station, leftward: ARROW });
   const input: ViewsInput = { layout, items, gaps: report.gaps, datums, zero, units, station, reach };
   const longest = (axis: Axis): string => ordinateTexts(input, axis).reduce((a, b) => (b.length > a.length ? b : a), "");
-  const wanted: Wanted = { views: ["plan", "side", "rear"], reach, nameRows: (scale) => nameRowsOf(lines, scale, hand), rearTitle: textWidth(viewTitle("rear", station, zero, units), hand.letters.head), ringRows: 1, longest: { x: longest("x"), y: longest("y"), z: longest("z") } };
+  const wanted: Wanted = { views: ["plan", "side", "rear"], reach, nameRows: (scale) => nameRowsOf(lines, scale, hand), sideTitle: textWidth(viewTitle("side", station, zero, units), hand.letters.head), rearTitle: textWidth(viewTitle("rear", station, zero, units), hand.letters.head), ringRows: 1, longest: { x: longest("x"), y: longest("y"), z: longest("z") } };
   const { scale, groups } = groupViews(wanted, options.scale, forViews, items, paper);
 
   const tables = [placesTable(layout, items, zero, units), gapsTable(layout, report, units), figuresTable(layout, report, zero, units), runsTable(layout, units), datumsTable(datums, zero, units), clearGapsTable(layout, report, units)].filter((t): t is Table => t !== null && t.rows.length > 0);
@@ -99,9 +102,7 @@ export function planSheets(layout: Layout, report: SheetReport, options: SheetOp
     drawFrame(pen, paper, hand, title);
     const own = drawViews(pen, arrangement, input, hand);
     if (index === 0) own.unshift(...remarks);
-    const foot = rect(content.left, Math.min(title.top, arrangement.under), title.left - 4, content.bottom);
-    const codes = datums.filter((d) => d.axis !== "x" && d.at >= reach[d.axis][0] && d.at <= reach[d.axis][1]).map((d) => `${d.code} ${d.name}`);
-    const footTop = drawFoot(pen, foot, own, hand, { datumNames: codes.length === 0 ? "" : `Datums: ${codes.join(", ")}.` });
+    const footTop = drawFoot(pen, rect(content.left, arrangement.under, footRight, content.bottom), own, hand, about);
     fillDrawing(pen, flow, arrangement, title, content, footTop);
     pages.push({ pen, remarks: own, drawing: true });
   });
@@ -112,7 +113,7 @@ export function planSheets(layout: Layout, report: SheetReport, options: SheetOp
     }
     const pen = createPen();
     drawFrame(pen, paper, hand, title);
-    drawFoot(pen, rect(content.left, title.top, title.left - 4, content.bottom), [], hand, null);
+    drawFoot(pen, rect(content.left, title.top, footRight, content.bottom), [], hand, null);
     const boxes = [rect(content.left, content.top, content.right, title.top - 4)];
     const before = rowsLeft(flow);
     for (const entry of flow) if (entry.done < entry.table.rows.length) placeInBoxes(pen, entry, boxes, false);
