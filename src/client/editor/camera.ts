@@ -40,6 +40,11 @@ export function pan(camera: Camera, view: View, dx: number, dy: number): Camera 
   return { ...camera, across: camera.across - du, high: camera.high + dv };
 }
 
+/** Height of the strip at the top of the plan that carries the names of datums, pixels. */
+export const DATUM_STRIP = 58;
+/** Air about what is framed, pixels. */
+const AIR = 8;
+
 export interface Extent {
   readonly low: readonly [number, number, number];
   readonly high: readonly [number, number, number];
@@ -49,11 +54,11 @@ export interface Extent {
 export function fit(extent: Extent, sizes: { readonly width: number; readonly planHeight: number; readonly sideHeight: number; readonly sectionWidth: number }): Camera {
   const size = [0, 1, 2].map((k) => Math.max(50, extent.high[k]! - extent.low[k]!));
   const middle = [0, 1, 2].map((k) => (extent.high[k]! + extent.low[k]!) / 2);
-  const scale = Math.min(4, 0.96 * Math.min((sizes.width - 40) / size[0]!, (sizes.planHeight - 70) / size[1]!, (sizes.sideHeight - 46) / size[2]!, (sizes.sectionWidth - 30) / size[1]!));
+  const scale = Math.min(4, Math.min((sizes.width - 40) / size[0]!, (sizes.planHeight - DATUM_STRIP - 2 * AIR) / size[1]!, (sizes.sideHeight - 46) / size[2]!, (sizes.sectionWidth - 30) / size[1]!));
   return {
     scale,
     x: middle[0]! - sizes.width / 2 / scale,
-    top: middle[1]! + (sizes.planHeight / 2 + 12) / scale,
+    top: middle[1]! + (sizes.planHeight + DATUM_STRIP) / 2 / scale,
     high: middle[2]! + (sizes.sideHeight / 2 + 14) / scale,
     across: middle[1]! - sizes.sectionWidth / 2 / scale,
   };

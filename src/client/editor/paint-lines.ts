@@ -1,7 +1,7 @@
 import type { Stance } from "#core/body/stance.ts";
 import { groundAt, PROJECTION } from "#core/frames.ts";
 import type { Glass, Layout, Space } from "#core/layout/schema.ts";
-import { at, DASHED, DOTTED, label, trace, type Sheet } from "./sheet.ts";
+import { at, DASHED, DOTTED, label, numberFont, trace, type Sheet } from "./sheet.ts";
 
 type Outline = readonly (readonly [number, number])[];
 
@@ -137,8 +137,12 @@ export function paintStance(sheet: Sheet, lines: readonly StanceLine[]): void {
     ctx.stroke();
     ctx.setLineDash([]);
     const [x, y] = at(sheet, line.to[0], line.to[1]);
-    const rearward = line.to[0] >= line.from[0];
-    // beyond the end of its line, never on it
-    label(sheet, line.text, line.kind === "limit" ? x + 7 : rearward ? x + 7 : x - 7, line.kind === "limit" ? y + 4 : y, { ink, align: line.kind === "limit" || rearward ? "left" : "right", size: line.kind === "limit" ? 12 : 13 });
+    const size = line.kind === "limit" ? 12 : 13;
+    ctx.font = numberFont(size);
+    const wide = ctx.measureText(line.text).width + 5;
+    const leftward = line.kind === "angle" && line.to[0] < line.from[0];
+    // beyond the end of its line; at the edge of the paper, where the end is outside, still to be read
+    const left = leftward ? x - 7 - wide : x + 7;
+    if (left > -wide && left < sheet.width) label(sheet, line.text, Math.max(6, Math.min(sheet.width - wide - 3, left)), line.kind === "limit" ? y + 4 : y, { ink, size });
   }
 }

@@ -2,11 +2,8 @@ import { groundAt, PROJECTION } from "#core/frames.ts";
 import type { Layout } from "#core/layout/schema.ts";
 import { formatLength } from "#core/units/format-length.ts";
 import type { LengthUnit } from "#core/units/parse-length.ts";
-import { originOf } from "./camera.ts";
-import { at, CHAIN, trace, wordFont, type Sheet } from "./sheet.ts";
-
-/** Height of the strip at the top of the plan that carries the names of datums, pixels. */
-export const DATUM_STRIP = 58;
+import { DATUM_STRIP, originOf } from "./camera.ts";
+import { at, CHAIN, label, trace, wordFont, type Sheet } from "./sheet.ts";
 
 export interface DatumLine {
   readonly axis: 0 | 1 | 2;
@@ -24,12 +21,12 @@ export function datumLines(layout: Layout): DatumLine[] {
 }
 
 /** The film, body lines, datums and the ground: what lies under everything. */
-export function paintPaper(sheet: Sheet, layout: Layout, units: LengthUnit, station: number): void {
+export function paintPaper(sheet: Sheet, layout: Layout, station: number): void {
   const { ctx, view, inks, width, height } = sheet;
   ctx.fillStyle = inks.film;
   ctx.fillRect(0, 0, width, height);
   paintBody(sheet, layout, station);
-  paintDatums(sheet, layout, units);
+  paintDatums(sheet, layout);
   if (view !== "plan") paintEarth(sheet, layout);
 }
 
@@ -52,7 +49,7 @@ function paintBody(sheet: Sheet, layout: Layout, station: number): void {
   ctx.stroke();
 }
 
-function paintDatums(sheet: Sheet, layout: Layout, units: LengthUnit): void {
+function paintDatums(sheet: Sheet, layout: Layout): void {
   const { ctx, view, inks, width, height } = sheet;
   const { u, v } = PROJECTION[view];
   const lines = datumLines(layout).filter((line) => line.axis === u || line.axis === v);
@@ -73,9 +70,15 @@ function paintDatums(sheet: Sheet, layout: Layout, units: LengthUnit): void {
   }
   ctx.stroke();
   ctx.setLineDash([]);
+}
+
+/** The datums' names, over everything else that stands still, each on a patch of film: never on a line. */
+export function paintDatumNames(sheet: Sheet, layout: Layout, units: LengthUnit): void {
+  const { ctx, view, inks, height } = sheet;
+  const { u, v } = PROJECTION[view];
+  const lines = datumLines(layout).filter((line) => line.axis === u || line.axis === v);
+  const look = { ink: inks.datum, words: true } as const;
   ctx.font = wordFont(13);
-  ctx.fillStyle = inks.datum;
-  ctx.textBaseline = "middle";
   if (view === "plan") {
     // names stand beside their own line, as flags; one that would cover the next is left to the tape's numbers
     const across = lines.filter((line) => line.axis === u).sort((a, b) => a.at - b.at);
@@ -84,18 +87,17 @@ function paintDatums(sheet: Sheet, layout: Layout, units: LengthUnit): void {
       const text = `${line.name} ${formatLength(line.at, units, units === "mm" ? 0 : undefined)}`;
       const next = across[i + 1];
       const room = next ? at(sheet, next.at, 0)[0] - x - 8 : Infinity;
-      const fits = [text, line.name].find((one) => ctx.measureText(one).width + 6 < room);
-      if (fits) ctx.fillText(fits, x + 5, DATUM_STRIP - 8);
+      const fits = [text, line.name].find((one) => ctx.measureText(one).width + 8 < room);
+      if (fits) label(sheet, fits, x + 5, DATUM_STRIP - 8, look);
     });
   }
   let above = -Infinity;
   for (const line of lines.filter((one) => one.axis === v).sort((a, b) => b.at - a.at)) {
     const [, y] = at(sheet, 0, line.at);
-    if (y < 70 || y > height - 6 || y - above < 16) continue;
+    if (y < 70 || y > height - 6 || y - above < 20) continue;
     above = y;
-    ctx.fillText(line.name, 12, y - 8);
+    label(sheet, line.name, 12, y - 11, look);
   }
-  ctx.textBaseline = "alphabetic";
 }
 
 /** The ground as the car stands on it. */

@@ -5,7 +5,8 @@ import type { LengthUnit } from "#core/units/parse-length.ts";
 import { balloonId, balloonsFor, paintBalloons, wantingOf, type Balloon } from "./paint-gaps.ts";
 import { paintDraft, paintHandle, paintMeasured, paintNodes, paintStation, paintWitnesses } from "./paint-hand.ts";
 import { litreLabels, paintLitres, paintSpaces, paintStance, spaceOutline, stanceLines, type StanceLine } from "./paint-lines.ts";
-import { datumLines, DATUM_STRIP, paintPaper } from "./paint-paper.ts";
+import { DATUM_STRIP } from "./camera.ts";
+import { datumLines, paintDatumNames, paintPaper } from "./paint-paper.ts";
 import { cornerTicks, paintCuts, paintShapes } from "./paint-things.ts";
 import { cutsAt, shapesOf, type Cut, type Shape } from "./shapes.ts";
 import { at, type Sheet } from "./sheet.ts";
@@ -160,11 +161,11 @@ export function createPainter(input: () => PaneInput) {
 
   return {
     still(ctx: CanvasRenderingContext2D): void {
-      const { still, view, units } = input();
+      const { still, view } = input();
       const page = sheet(ctx);
       const state = useViewState.getState();
       const station = cutStation(state);
-      paintPaper(page, still, units, station);
+      paintPaper(page, still, station);
       const held = inHand();
       const all = shapesOf(still, view).filter((shape) => !state.hidden.has(shape.key) && !held.has(shape.key));
       if (view === "rear") {
@@ -173,7 +174,7 @@ export function createPainter(input: () => PaneInput) {
       } else paintShapes(page, all, NONE, null);
     },
     moving(ctx: CanvasRenderingContext2D): void {
-      const { shown, view, litres } = input();
+      const { shown, view, litres, units } = input();
       const page = sheet(ctx);
       const state = useViewState.getState();
       const chosen = new Set(state.selection);
@@ -189,6 +190,7 @@ export function createPainter(input: () => PaneInput) {
       } else paintShapes(page, lifted, chosen, state.hover);
       paintSpaces(page, shown.document, chosen, state.hover);
       paintStance(page, shownStance());
+      paintDatumNames(page, shown.document, units);
       paintLitres(page, litreLabels(page, shown.document, litres));
     },
     hand(ctx: CanvasRenderingContext2D): void {

@@ -100,7 +100,7 @@ export const ViewPane = memo(function ViewPane({ view, width, height, planHeight
     };
     // films are refs: they stay the same
     // eslint-disable-next-line react-hooks/exhaustive-deps
-  }, [painter, view, still, width, height]);
+  }, [painter, view, still, litres, width, height]);
 
   // letters are measured and drawn anew when the faces have come
   useEffect(() => {

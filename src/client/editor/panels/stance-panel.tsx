@@ -79,7 +79,7 @@ export function StancePanel() {
           </dl>
         )}
         {spaces?.flatMap((space) => space.findings ?? []).map((finding) => <p key={finding} className="mt-2 text-sm text-tight">{finding}</p>)}
-        <p className="mt-2 text-sm text-pencil">Free is what is left between parts as drawn, each kept off by the space's own gap. Real cases come with a later sheet.</p>
+        <p className="mt-2 text-sm text-pencil">Free is what is left between parts as drawn, each kept off by the space's own gap. It is a volume: a case is stiff and square, so less of it can be used.</p>
       </section>
     </div>
   );

@@ -60,8 +60,7 @@ export function PartPlace({ form }: { form: Form<Part> }) {
       </TicketRow>
       <TicketRow label={datum("z", z, "above")}>
         <LengthEntry label={`above ${z.name}, lowest point`} suffix="lowest" mm={lowest} disabled={disabled} give={(to) => shift(2, to - lowest, `lowest point ${say(to)} above ${z.name}`)} />
-        <LengthEntry label={`above ${z.ground ? "chassis zero plane" : z.name}, highest point`} suffix={z.ground ? "top, zero pl." : "highest"} mm={faces.high[2] - (z.ground ? 0 : z.at)} disabled={disabled}
-          give={(to) => shift(2, to - (faces.high[2] - (z.ground ? 0 : z.at)), `highest point ${say(to)} above ${z.ground ? "chassis zero plane" : z.name}`)} />
+        {!z.ground && <LengthEntry label={`above ${z.name}, highest point`} suffix="highest" mm={faces.high[2] - z.at} disabled={disabled} give={(to) => shift(2, to - (faces.high[2] - z.at), `highest point ${say(to)} above ${z.name}`)} />}
       </TicketRow>
       <TicketRow label={<span title={LEAN_SAYS[side]}>lean {side === "middle" ? "right" : "out"} · back · turn</span>}>
         <NumberEntry label={`lean ${side === "middle" ? "right" : "out"}, degrees`} unit="°" decimals={2} value={lean.out} disabled={disabled} give={(to) => leanTo({ out: to }, `lean ${side === "middle" ? "right" : "out"} ${to}°`)} />
