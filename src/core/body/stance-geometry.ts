@@ -89,41 +89,75 @@ export interface Governor {
   readonly point: Vec3;
 }
 
+/** Steps of the quarter turn in which a round piece is looked at, so that nothing hides below the tyre's own arc. */
+const QUARTER_STEPS = 90;
+
 /**
  * Least tangent angle, degrees, from the ground at a wheel to anything beyond it, and what governs.
  *
+ * Every point beyond the wheel centre and outside the circle has its angle, also one low down between the tyre's foot and its farthest point: the line that is
+ * tilted up meets it before the arc hides it. Over a convex piece the least is at a corner, or on a round edge, where it is found by moving the line.
+ *
  * @param outward +1 behind the rear wheel (departure), -1 ahead of the front wheel (approach)
- * @returns null where nothing reaches beyond the tyre's own circle: no angle is limited.
- * Accuracy 1e-10 degrees. Source: definition 49 CFR 523.2 / ISO 612 6.10, 6.11; closed form for one point in facts (tangent
- * from a point to a circle), tested against it.
+ * @returns null where nothing reaches beyond the tyre's own circle: no angle is limited; negative below the ground
+ * Accuracy 1e-10 degrees; a round edge that is below the tyre's own arc by less than 0.01 mm may be missed. Source: definition 49 CFR 523.2 / ISO 612 6.10, 6.11;
+ * closed form for one point in facts (tangent from a point to a circle), tested against it.
  */
 export function tangentAngle(items: readonly StanceItem[], ground: GroundFrame, outward: 1 | -1): { angle: number; governs: Governor } | null {
-  const wheel = outward === 1 ? ground.rear : ground.front;
+  const { centre, radius } = outward === 1 ? ground.rear : ground.front;
   const found: Lowest = { value: 0, x: 0, y: 0, z: 0 };
   let best = Math.PI / 2;
   let governs: Governor | null = null;
+  /** Takes the point that was found, where its angle is less than the best so far. */
+  const take = (key: string): boolean => {
+    const along = outward * (found.x * ground.cos + (found.z - ground.z0) * ground.sin - centre.along);
+    const up = -found.x * ground.sin + (found.z - ground.z0) * ground.cos - centre.up;
+    const distance = Math.hypot(along, up);
+    if (along <= 0 || distance <= radius) return false;
+    const angle = Math.atan2(up, along) + Math.asin(radius / distance);
+    if (!(angle < best - 1e-15)) return false;
+    best = angle;
+    governs = { key, point: [found.x, found.y, found.z] };
+    return true;
+  };
+  /** The point of a piece that a line at this angle cuts most deeply: n = (-sin, cos) in (outward along, up), written in car axes. */
+  const deepest = (piece: Piece, angle: number) => {
+    const na = -Math.sin(angle) * outward;
+    const nu = Math.cos(angle);
+    lowest(piece, na * ground.cos - nu * ground.sin, na * ground.sin + nu * ground.cos, found);
+  };
   for (const item of items) {
     for (const piece of item.pieces) {
+      if (piece.radius === 0) {
+        for (const p of piece.points) {
+          found.x = p[0]; found.y = p[1]; found.z = p[2];
+          take(item.key);
+        }
+        if (piece.discs.length === 0) continue;
+      }
+      if (isUnderArc(piece, ground, outward)) {
+        for (let step = 0; step <= QUARTER_STEPS; step++) {
+          deepest(piece, ((Math.PI / 2) * step) / QUARTER_STEPS);
+          take(item.key);
+        }
+      }
       for (let step = 0; step < 100; step++) {
-        // n = (-sin, cos) in (outward along, up), written in car axes
-        const na = -Math.sin(best) * outward;
-        const nu = Math.cos(best);
-        const dx = na * ground.cos - nu * ground.sin;
-        const dz = na * ground.sin + nu * ground.cos;
-        lowest(piece, dx, dz, found);
-        const along = outward * (found.x * ground.cos + (found.z - ground.z0) * ground.sin - wheel.centre.along);
-        const up = -found.x * ground.sin + (found.z - ground.z0) * ground.cos - wheel.centre.up;
-        const depth = -Math.sin(best) * along + Math.cos(best) * up + wheel.radius;
-        if (depth >= -1e-11 || along <= 0) break;
-        const distance = Math.hypot(along, up);
-        const angle = distance <= wheel.radius ? best : Math.atan2(up, along) + Math.asin(wheel.radius / distance);
-        if (angle >= best) break;
-        best = angle;
-        governs = { key: item.key, point: [found.x, found.y, found.z] };
+        deepest(piece, best);
+        if (!take(item.key)) break;
       }
     }
   }
   return governs === null ? null : { angle: (best * 180) / Math.PI, governs };
+}
+
+/** True where a piece may have something below the wheel centre and no farther out than the tyre's own circle. */
+function isUnderArc(piece: Piece, ground: GroundFrame, outward: 1 | -1): boolean {
+  const { centre, radius } = outward === 1 ? ground.rear : ground.front;
+  const least: Lowest = { value: 0, x: 0, y: 0, z: 0 };
+  lowest(piece, -ground.sin, ground.cos, least);
+  if (least.value - ground.z0 * ground.cos >= centre.up) return false;
+  lowest(piece, outward * ground.cos, outward * ground.sin, least);
+  return least.value - outward * ground.z0 * ground.sin - outward * centre.along < radius;
 }
 
 /** Sum of the tangent angles to both wheels at a place between them, radians; Infinity inside a tyre's circle or beyond the wheels. */

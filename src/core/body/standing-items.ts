@@ -1,3 +1,4 @@
+import type { Vec3 } from "../frames.ts";
 import type { Piece } from "../geometry/piece.ts";
 import { GeometryError, partPieces } from "../geometry/solids.ts";
 import { tubePath, tubePieces } from "../geometry/tubes.ts";
@@ -40,7 +41,7 @@ export function standingItems(layout: Layout): StandingItems {
     const nodes = [{ key: "inboard", at: shaft.inboard }, { key: "outboard", at: shaft.outboard }];
     low.push({ key: shaft.key, pieces: tubePieces(tubePath({ diameter: shaft.diameter, bendRadius: 0, nodes, legs: [] })).map((tube) => tube.piece) });
   }
-  const body = bodyPoints(layout);
+  const body = bodyLines(layout);
   if (body) {
     rigid.push(body.lengths);
     if (body.standing.pieces.length > 0) low.push(body.standing);
@@ -48,17 +49,20 @@ export function standingItems(layout: Layout): StandingItems {
   return { rigid, low, unreadable };
 }
 
-/** Body lines as points: the plan outline knows no height, so it counts for lengths only; the rear outline no station, so for clearance only. */
-function bodyPoints(layout: Layout): { lengths: StanceItem; standing: StanceItem } | null {
-  const point = (x: number, y: number, z: number): Piece => ({ points: [[x, y, z]], discs: [], radius: 0, form: "polytope" });
+/**
+ * Body lines edge by edge, so that the middle of a long sill counts too. The plan outline knows no height, so it counts for lengths only; the rear outline knows no
+ * station, so over a leaning ground it counts for nothing here.
+ */
+function bodyLines(layout: Layout): { lengths: StanceItem; standing: StanceItem } | null {
+  const edge = (...points: Vec3[]): Piece => ({ points, discs: [], radius: 0, form: "polytope" });
   const { side, top, sections } = layout.body;
-  // a side outline is a flat polygon on the centre plane: edge by edge, so that the middle of a long sill counts too
-  const edges: Piece[] = (side ?? []).map((p, i) => {
+  // a side outline is a flat polygon on the centre plane
+  const edges = (side ?? []).map((p, i) => {
     const q = side![(i + 1) % side!.length]!;
-    return { points: [[p[0], 0, p[1]], [q[0], 0, q[1]]], discs: [], radius: 0, form: "polytope" };
+    return edge([p[0], 0, p[1]], [q[0], 0, q[1]]);
   });
-  const stations = sections.flatMap((section) => section.line.map((p) => point(section.x, p[0], p[1])));
+  const stations = sections.flatMap(({ x, line }) => line.slice(1).map((q, i) => edge([x, line[i]![0], line[i]![1]], [x, q[0], q[1]])));
   const standing = [...edges, ...stations];
-  const lengths = [...standing, ...(top ?? []).map((p) => point(p[0], p[1], 0))];
+  const lengths = [...standing, ...(top ?? []).map((p) => edge([p[0], p[1], 0]))];
   return lengths.length > 0 ? { lengths: { key: "body", pieces: lengths }, standing: { key: "body", pieces: standing } } : null;
 }
