@@ -6,6 +6,8 @@ import { growPiece } from "./grown-section.ts";
 import { integrate } from "./integrate.ts";
 import { insetStretches, overlapStretches } from "./stretches.ts";
 
+type Outline = readonly (readonly [number, number])[];
+
 const EVERYWHERE = 1e7;
 /** Litres of a space: the outlines alone, and what wall gap and parts leave. */
 export interface SpaceVolume {
@@ -26,6 +28,8 @@ export function measureSpace(space: Space, obstacles: readonly Piece[]): SpaceVo
   if (!extent) return { grossLitres: 0, freeLitres: 0 };
   const [from, to] = extent;
   const outlineBreaks = [...(space.top ?? []), ...(space.side ?? [])].map((p) => p[0]);
+  const rear = space.rear ?? [];
+  outlineBreaks.push(...passes(space.top, rear.map((p) => p[0])), ...passes(space.side, rear.map((p) => p[1])));
   const gross = integrate((x) => freeArea(regionAt(space, x, 0), []), from, to, outlineBreaks);
 
   const near = obstacles.map((piece) => ({ piece, grown: growPiece(piece, space.partGap) })).filter(({ grown }) => reaches(space, grown.low, grown.high));
@@ -79,7 +83,7 @@ function regionAt(space: Space, x: number, gap: number): ScanRegion {
     const ys = rear.map((p) => p[0]);
     rearFrom = Math.min(...ys);
     rearTo = Math.max(...ys);
-    for (const y of ys) rearBreaks.push(y, y - gap, y + gap);
+    bendsOf(rear, up, gap, rearBreaks);
     if (gap > 0) for (let i = 1; i < 64; i++) rearBreaks.push(rearFrom + ((rearTo - rearFrom) * i) / 64);
   }
   const from = Math.max(across[0] ?? 0, rearFrom);
@@ -92,6 +96,41 @@ function regionAt(space: Space, x: number, gap: number): ScanRegion {
     return [];
   };
   return { from, to, breaks: [...across, ...rearBreaks], stretchesAt };
+}
+
+/**
+ * The y where a rear outline's free heights bend: its corners, and where its edges, moved inward by the gap or rounded about a corner, pass the levels that the side outline
+ * sets. Between them a straight-sided section is a trapezium; a bend left out would be cut across.
+ */
+function bendsOf(rear: Outline, levels: readonly number[], gap: number, out: number[]): void {
+  const n = rear.length;
+  const offsets = gap > 0 ? [gap, -gap] : [0];
+  for (let i = 0; i < n; i++) {
+    const [ay, az] = rear[i]!;
+    const [by, bz] = rear[(i + 1) % n]!;
+    const [cy, cz] = rear[(i + 2) % n]!;
+    const [dy, dz, ey, ez] = [by - ay, bz - az, cy - by, cz - bz];
+    const [d, e] = [Math.hypot(dy, dz), Math.hypot(ey, ez)];
+    out.push(ay, ay - gap, ay + gap);
+    for (const off of offsets) {
+      const [oy, oz] = [(-dz / d) * off, (dy / d) * off];
+      if (off !== 0) out.push(ay + oy, by + oy);
+      if (dz !== 0) for (const level of levels) out.push(ay + oy + ((level - az - oz) / dz) * dy);
+      // where the moved edge meets the next one, moved likewise
+      const turn = dy * ez - dz * ey;
+      if (off !== 0 && turn !== 0) out.push(by + oy + (dy * (((-ez / e) * off - oy) * ez - ((ey / e) * off - oz) * ey)) / turn);
+    }
+    if (gap > 0) for (const level of levels) if (Math.abs(level - az) < gap) out.push(ay - Math.sqrt(gap * gap - (level - az) ** 2), ay + Math.sqrt(gap * gap - (level - az) ** 2));
+  }
+}
+
+/** The x where edges of an outline pass the levels that another's corners set; none where that would be too many to be worth it. */
+function passes(outline: Outline | undefined, levels: readonly number[]): number[] {
+  if (!outline || outline.length * levels.length > 10_000) return [];
+  return outline.flatMap((p, i) => {
+    const q = outline[(i + 1) % outline.length]!;
+    return levels.filter((level) => p[1] < level !== q[1] < level).map((level) => p[0] + ((level - p[1]) / (q[1] - p[1])) * (q[0] - p[0]));
+  });
 }
 
 /** True where a box and the space's own box meet: everything else cannot cut it. */
