@@ -72,6 +72,7 @@ export function datumsAlong(axis: Axis, chassis: Chassis): TapeDatum[] {
 
 /** Which side of the car a part is on; middle where it reaches across the centre plane. */
 export type Side = "left" | "right" | "middle";
+/** By the faces: a part that ends on the centre plane is on its own side. */
 export const sideOf = (faces: Faces): Side => (faces.low[1] >= 0 ? "right" : faces.high[1] <= 0 ? "left" : "middle");
 
 /** A turn in the trade's words, degrees. On the middle "out" is to the right. */

@@ -15,6 +15,7 @@ export interface StandingItems {
   readonly unreadable: readonly { readonly key: string; readonly message: string }[];
 }
 
+/** Exact convex pieces at their poses, mm, car frame; a thing without a shape is named in `unreadable`, never left out silently. */
 export function standingItems(layout: Layout): StandingItems {
   const rigid: StanceItem[] = [];
   const low: StanceItem[] = [];

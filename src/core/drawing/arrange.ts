@@ -44,6 +44,7 @@ export interface Arrangement {
 
 export const EDGE = 1.5; // air between a view's box and the rings' leaders' ends
 export const JOG = 3.6;
+/** Height of one row of datum names, mm of paper. */
 export const nameRow = (hand: Hand): number => 1.3 * hand.letters.dimension;
 
 /**

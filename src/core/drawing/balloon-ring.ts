@@ -87,10 +87,12 @@ export function leadersCross(a: Matched, b: Matched, edge: number): boolean {
 
 type P = readonly [number, number];
 const side = (a: P, b: P, p: P) => (b[0] - a[0]) * (p[1] - a[1]) - (b[1] - a[1]) * (p[0] - a[0]);
+/** Do the segments a b and c d cross? Paper; one that only touches the other does not. */
 export function segmentsMeet(a: P, b: P, c: P, d: P): boolean {
   return side(a, b, c) * side(a, b, d) < 0 && side(c, d, a) * side(c, d, b) < 0;
 }
 
+/** Least distance of a point from the segment a b, mm of paper. */
 export function distanceToSegment(p: P, a: P, b: P): number {
   const [dx, dy] = [b[0] - a[0], b[1] - a[1]];
   const l2 = dx * dx + dy * dy;

@@ -32,8 +32,10 @@ export interface TagPlan {
   readonly missed: readonly Tag[];
 }
 
+/** Radius that holds two characters, mm of paper; longer labels get longer discs. */
 export const balloonRadius = (hand: Hand): number => Math.max(textWidth("00", hand.letters.table) / 2 + 0.7, 0.9 * hand.letters.table);
 const STUB = 1.2;
+/** Height of a ring of so many rows with its leaders' stubs, mm of paper. */
 export const ringHeight = (rows: 0 | 1 | 2, radius: number): number => (rows === 0 ? 0 : STUB + 2 * radius + (rows === 2 ? 2 * radius + 0.5 : 0));
 
 /** Ports along a ring: two rows share them alternately, one row takes whole balloons. */
@@ -104,6 +106,7 @@ export function portCentre(port: RingPort, ring: Ring, radius: number): Paper {
   return [port.x, ring.edge + ring.out * (STUB + radius + (port.row === 1 ? 2 * radius + 0.5 : 0))];
 }
 
+/** Inks a plan's leaders, then the numbers over them. Paper. */
 export function drawTags(pen: Pen, plan: TagPlan, radius: number, hand: Hand): void {
   const leader = stroke(hand.pens.hair, PENCIL);
   for (const { tag, matched, ring } of plan.outside) {

@@ -13,6 +13,7 @@ export interface Facet {
   readonly sides: Float64Array;
 }
 
+/** A convex polygon (anticlockwise, view, mm at full size) made ready for clipping; `near` is how far its piece reaches toward the reader. */
 export function facetOf(points: readonly Vec2[], near = 0): Facet {
   let [left, right, low, high] = [Infinity, -Infinity, Infinity, -Infinity];
   for (const [a, b] of points) {

@@ -136,6 +136,7 @@ export function lookOf(item: DrawnItem, view: View, tolerance: number): Look {
   return { item, facets, edges: outlineEdges(facets, 2 * tolerance), box: boxIn(item.extent, view) };
 }
 
+/** What an extent covers of a view, mm at full size. */
 export function boxIn(extent: Extent, view: View): Box2 {
   const { u, v } = PROJECTION[view];
   return { left: extent.low[u], right: extent.high[u], low: extent.low[v], high: extent.high[v] };

@@ -9,6 +9,7 @@ export const BELOW = 0.22;
 
 export type TextMark = Extract<Mark, { kind: "text" }>;
 
+/** Width of a text at an em height, mm of paper: exact for the sheet's font, in which every character is alike. */
 export const textWidth = (text: string, size: number): number => [...text].length * CHARACTER * size;
 /** How many characters stand in a width. */
 export const charactersIn = (width: number, size: number): number => Math.max(0, Math.floor(width / (CHARACTER * size) + 1e-9));

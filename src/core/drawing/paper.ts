@@ -8,9 +8,13 @@ export interface Rect {
   readonly right: number;
   readonly bottom: number;
 }
+/** mm of paper, whose y runs down. */
 export const widthOf = (r: Rect): number => r.right - r.left;
+/** mm of paper. */
 export const heightOf = (r: Rect): number => r.bottom - r.top;
+/** From left and top to right and bottom edge, mm of paper. */
 export const rect = (left: number, top: number, right: number, bottom: number): Rect => ({ left, top, right, bottom });
+/** The same smaller by so much on every side, mm. */
 export const inset = (r: Rect, by: number): Rect => rect(r.left + by, r.top + by, r.right - by, r.bottom - by);
 
 /** Lying sheets: ISO 216 sizes and the two inch sizes (ASME Y14.1 A and B), mm. */

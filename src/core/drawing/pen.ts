@@ -14,12 +14,14 @@ export interface Pen {
   box(layer: string, area: Rect, stroke: Stroke | null, fill?: string | null): void;
 }
 
+/** How a line is inked; width in mm of paper. */
 export const stroke = (width: number, ink: string = INK, type: LineType = "continuous"): Stroke => ({ width, type, ink });
 
 /** Paper coordinates to a thousandth of a millimetre: what is drawn does not depend on rounding of the last bits. */
 const r3 = (p: Paper): Paper => [Math.round(p[0] * 1000) / 1000 + 0, Math.round(p[1] * 1000) / 1000 + 0];
 const known = (of: string | undefined) => (of === undefined ? {} : { of });
 
+/** A pen that collects marks in drawing order: millimetres of paper, y down. */
 export function createPen(): Pen {
   const marks: Mark[] = [];
   return {

@@ -19,6 +19,7 @@ export interface Zero {
   readonly names: readonly [x: string, y: string, z: string];
 }
 
+/** The axles and zero planes, less those that a datum of the document names, then the document's in its order; mm, car frame. */
 export function sheetDatums(layout: Layout): SheetDatum[] {
   const own = layout.chassis.datums;
   const standing = [

@@ -41,6 +41,7 @@ export function placesTable(layout: Layout, items: readonly DrawnItem[], zero: Z
   };
 }
 
+/** Where a size is from and how much larger it may turn out, in the sheet's unit. */
 export function sourceText(source: Source, units: SheetUnits): string {
   const { how, plusMinus } = source;
   const amount = (mm: number) => (units === "mm" ? String(Math.round(mm * 10) / 10) : gapText(mm, "in"));
@@ -99,6 +100,7 @@ function becauseText(gap: Gap, units: SheetUnits): string {
   return [gap.why || "default gap", ...shares, ...(gap.provisional ? ["estimated size"] : []), ...open].join(", ");
 }
 
+/** Names of parts, tyres, runs, shafts and rooms by the keys that gaps use. */
 export function namesOf(layout: Layout): Map<string, string> {
   const names = new Map<string, string>();
   for (const wheel of ["front-left", "front-right", "rear-left", "rear-right"]) names.set(`tyre-${wheel}`, `${wheel[0]!.toUpperCase()}${wheel.slice(1).replace("-", " ")} tyre`);
@@ -107,6 +109,7 @@ export function namesOf(layout: Layout): Map<string, string> {
   return names;
 }
 
+/** Runs and shafts with diameter and developed length, mm or inches; null where there are none. */
 export function runsTable(layout: Layout, units: SheetUnits): Table | null {
   if (layout.runs.length + layout.shafts.length === 0) return null;
   const rows = layout.runs.map((run, index): Row => {
@@ -168,6 +171,7 @@ export function figuresTable(layout: Layout, report: SheetReport, zero: Zero, un
   };
 }
 
+/** Datums with their places from the chosen zero. */
 export function datumsTable(datums: readonly SheetDatum[], zero: Zero, units: SheetUnits): Table {
   const index = { x: 0, y: 1, z: 2 } as const;
   const rows = datums.map((datum): Row => ({ of: datum.key, cells: [{ text: datum.code, bold: true }, datum.name, datum.axis, placeText(datum.at - zero.at[index[datum.axis]], units)] }));

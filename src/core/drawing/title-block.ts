@@ -35,7 +35,9 @@ interface Cell {
 
 /** ISO 7200: at most 180 mm wide, in the lower right corner of the frame. */
 export const TITLE_WIDTH = 180;
+/** Height of one of its rows, mm of paper. */
 export const titleRowHeight = (hand: Hand): number => Math.max(7.8, hand.letters.table * 3.2);
+/** Of all five rows, mm of paper. */
 export const titleHeight = (hand: Hand): number => 5 * titleRowHeight(hand);
 
 /** Area of the title block: narrower than 180 mm only where the check bar would otherwise find no room beside it. */

@@ -15,6 +15,7 @@ export interface ViewFrame {
   readonly origin: Paper;
   readonly scale: number;
 }
+/** A view's point (mm at full size, v up) on paper (mm, y down): divided by the scale and turned over. The one place where this happens. */
 export const onPaper = (frame: ViewFrame, p: Vec2): Paper => [frame.origin[0] + p[0] / frame.scale, frame.origin[1] - p[1] / frame.scale];
 
 /** What one sees through, or past: it hides nothing on a sheet. */

@@ -1,7 +1,9 @@
 import { LISTS, SINGLETONS, type Diff, type ItemChange, type ListName, type SingletonName } from "./commands.ts";
 import type { Layout } from "./schema.ts";
 
+/** True for a name of one of the document's lists of keyed items. */
 export const isList = (name: string): name is ListName => (LISTS as readonly string[]).includes(name);
+/** True for a name of a part of the document that there is one of. */
 export const isSingleton = (name: string): name is SingletonName => (SINGLETONS as readonly string[]).includes(name);
 
 /** One keyed item or singleton as stored: the value, or null where it does not exist. "document" is name, notes and extra. */

@@ -2,6 +2,7 @@ import { groundAt } from "../frames.ts";
 import { partSchema, type Layout, type Part, WHEEL_NAMES } from "./schema.ts";
 
 export type WheelName = (typeof WHEEL_NAMES)[number];
+/** Key of the tyre that the chassis implies at a wheel. */
 export const tyreKey = (wheel: WheelName): string => `tyre-${wheel}`;
 export const GENERATED_KEYS: ReadonlySet<string> = new Set(WHEEL_NAMES.map(tyreKey));
 
