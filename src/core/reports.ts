@@ -20,7 +20,7 @@ export type Section = keyof typeof REPORTS;
 export const SECTIONS = Object.keys(REPORTS) as Section[];
 
 /** Raised when any computed number's definition changes, so that kept reports are computed anew. */
-export const CORE_VERSION = 3;
+export const CORE_VERSION = 4;
 
 export interface FullReport extends GapReport {
   readonly format: "handbreadth-report";

@@ -99,7 +99,7 @@ const QUARTER_STEPS = 90;
  * tilted up meets it before the arc hides it. Over a convex piece the least is at a corner, or on a round edge, where it is found by moving the line.
  *
  * @param outward +1 behind the rear wheel (departure), -1 ahead of the front wheel (approach)
- * @returns null where nothing reaches beyond the tyre's own circle: no angle is limited; negative below the ground
+ * @returns null where nothing reaches beyond the tyre's own circle: no angle is limited. Expects nothing below the ground (`bodyReport` sees to it)
  * Accuracy 1e-10 degrees; a round edge that is below the tyre's own arc by less than 0.01 mm may be missed. Source: definition 49 CFR 523.2 / ISO 612 6.10, 6.11;
  * closed form for one point in facts (tangent from a point to a circle), tested against it.
  */

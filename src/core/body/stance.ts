@@ -4,6 +4,9 @@ import type { Layout } from "../layout/schema.ts";
 import { breakoverAngle, groundFrame, lowest, tangentAngle, type Governor, type GroundFrame, type Lowest, type StanceItem } from "./stance-geometry.ts";
 import { standingItems } from "./standing-items.ts";
 
+/** mm: what lies in the ground by less stands on it. */
+const SLACK = 1e-6;
+
 export interface BodyFinding {
   readonly code: "over-limit" | "no-limit-known" | "below-ground" | "nothing-to-measure" | "shape";
   readonly message: string;
@@ -56,14 +59,16 @@ export function measureStance(layout: Layout): Stance {
   const rearOverhang = rear ? rear.point[0] - wheelbase : null;
   const rearOverhangShare = rearOverhang === null ? null : rearOverhang / wheelbase;
 
-  const approach = tangentAngle(low, ground, -1);
-  const departure = tangentAngle(low, ground, 1);
-  const breakover = breakoverAngle(low, ground);
   const clearance = leastClearance(low, ground);
-  if (front && !approach) findings.push({ code: "no-limit-known", message: "Nothing reaches ahead of the front tyres: no approach angle is limited." });
-  if (rear && !departure) findings.push({ code: "no-limit-known", message: "Nothing reaches behind the rear tyres: no departure angle is limited." });
-  if (clearance && clearance.height < 0) {
-    findings.push({ code: "below-ground", key: clearance.governs.key, message: `${clearance.governs.key} lies ${(-clearance.height).toFixed(1)} mm below the ground.` });
+  const sunk = clearance !== null && clearance.height < -SLACK;
+  // no car stands with a part in the ground: a line from the ground clears nothing then
+  const approach = sunk ? null : tangentAngle(low, ground, -1);
+  const departure = sunk ? null : tangentAngle(low, ground, 1);
+  const breakover = sunk ? null : breakoverAngle(low, ground);
+  if (front && !approach && !sunk) findings.push({ code: "no-limit-known", message: "Nothing reaches ahead of the front tyres: no approach angle is limited." });
+  if (rear && !departure && !sunk) findings.push({ code: "no-limit-known", message: "Nothing reaches behind the rear tyres: no departure angle is limited." });
+  if (sunk) {
+    findings.push({ code: "below-ground", key: clearance.governs.key, message: `${clearance.governs.key} lies ${(-clearance.height).toFixed(1)} mm below the ground: angles cannot be computed.` });
   }
   const limit = layout.body.overhangLimit;
   if (limit && rearOverhang !== null && rearOverhang > limit.share * wheelbase + 1e-9) {
