@@ -5,6 +5,7 @@ import type { View } from "#core/frames.ts";
 import { rolesFor } from "#core/layout/command-access.ts";
 import { formatLength } from "#core/units/format-length.ts";
 import { useStore } from "zustand";
+import { originOf } from "./camera.ts";
 import { useEditor } from "./editor-context.ts";
 import { createGestures } from "./gestures.ts";
 import type { HandsContext } from "./hands-context.ts";
@@ -83,9 +84,17 @@ export const ViewPane = memo(function ViewPane({ view, width, height, planHeight
         if (films[2].current && !useViewState.getState().preview && painter.settle(films[2].current.getContext()._context)) films[2].current.batchDraw();
       }, 160);
     };
+    // where the paper lies, for whoever looks from outside (journeys): mm at the left and top edge, pixels per mm
+    const tell = () => {
+      const { camera } = useViewState.getState();
+      const [left, top] = originOf(camera, view);
+      Object.assign(box.current!.dataset, { left, top, scale: camera.scale });
+    };
+    tell();
     settle();
     const stop = useViewState.subscribe((next, before) => {
       const camera = next.camera !== before.camera;
+      if (camera) tell();
       const cut = view === "rear" && cutStation(next) !== cutStation(before);
       const chosen = next.selection !== before.selection || next.hidden !== before.hidden;
       if (camera || cut || next.hidden !== before.hidden) films[0].current?.batchDraw();

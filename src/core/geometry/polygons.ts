@@ -50,7 +50,7 @@ export function findOutlineFault(outline: Outline): OutlineFault | null {
       const i = Math.min(e.i, order[m]!.i);
       const j = Math.max(e.i, order[m]!.i);
       const at = meeting(outline, i, j);
-      if (at) return { kind: "crosses", corners: [i, j], at, message: `the edge from corner ${i} meets the edge from corner ${j} at ${at[0].toFixed(3)}, ${at[1].toFixed(3)}` };
+      if (at) return { kind: "crosses", corners: [i, j], at, message: `it crosses itself: the edge from corner ${i} meets the edge from corner ${j} at ${at[0].toFixed(3)}, ${at[1].toFixed(3)}` };
     }
   }
   let extent = 0;

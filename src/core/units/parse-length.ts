@@ -4,7 +4,8 @@ export type ParsedLength = { readonly ok: true; readonly mm: number } | { readon
 /** Units a person may have lengths shown in. */
 export type LengthUnit = "mm" | "in" | "in-fraction";
 
-const MM_PER: Readonly<Record<string, number>> = { mm: 1, cm: 10, m: 1000, in: 25.4, ft: 304.8 };
+/** mm in a unit, as whole numbers over and under the line: 3 in is 3 x 254 / 10 = 76.2 and not 76.19999999999999. */
+const MM_PER: Readonly<Record<string, readonly [over: number, under: number]>> = { mm: [1, 1], cm: [10, 1], m: [1000, 1], in: [254, 10], ft: [3048, 10] };
 
 /**
  * Reads a length as people write it: `310`, `310mm`, `31 cm`, `12 3/8"`, `12.375 in`, `1' 2"`, `1' 2 3/8"`, and sums and differences of such.
@@ -59,7 +60,8 @@ function readTerm(term: string, unit: LengthUnit): number | { message: string } 
     rest = given ? rest.slice(given[0].length) : rest;
     const name: string = given ? nameOf(given[1]!) : feet ? "in" : unit === "mm" ? "mm" : "in";
     if (count > 0 && !(feet && name === "in")) return { message: `"${term}": only feet and inches go together without a plus sign` };
-    mm += value * MM_PER[name]!;
+    const [by, per] = MM_PER[name]!;
+    mm += (value * by) / per;
     feet = name === "ft";
     count++;
   }

@@ -48,8 +48,11 @@ export function Entry<T>({ label, suffix, text, read, give, disabled, step, word
     if (!refused) setTyped(null);
   };
   const key = (event: KeyboardEvent<HTMLInputElement>) => {
-    if (event.key === "Enter") take();
-    else if (event.key === "Escape" && typed !== null) {
+    if (event.key === "Enter") {
+      // what is typed is taken first; a form is sent by an Enter of its own
+      if (typed !== null) event.preventDefault();
+      take();
+    } else if (event.key === "Escape" && typed !== null) {
       event.stopPropagation();
       escaped.current = true;
       setTyped(null);

@@ -11,7 +11,7 @@ import { useViewState } from "../view-state.ts";
 import { framePair } from "../workspace.tsx";
 import { Gauge } from "./gauge.tsx";
 import { namesOf } from "./names.ts";
-import { ledgerRows, rowSentence, type LedgerRow, type Order } from "./rows.ts";
+import { ledgerRows, rowSentence, sharesSentence, type LedgerRow, type Order } from "./rows.ts";
 import { Shares } from "./shares.tsx";
 
 const GRID = "grid items-center gap-x-3 grid-cols-[34px_78px_minmax(0,1fr)_minmax(0,1fr)_62px] md:grid-cols-[34px_84px_minmax(90px,1fr)_minmax(90px,1fr)_66px_66px_56px_72px_minmax(120px,1.2fr)] xl:grid-cols-[34px_84px_minmax(120px,1fr)_minmax(120px,1fr)_172px_74px_74px_62px_78px_minmax(220px,1.7fr)]";
@@ -68,7 +68,7 @@ export function GapLedger({ view, setView }: { view: LedgerView; setView: (view:
     const step = steps[event.key];
     if (step !== undefined) {
       event.preventDefault();
-      const next = at < 0 ? (step > 0 ? 0 : rows.length - 1) : Math.max(0, Math.min(rows.length - 1, at + step));
+      const next = event.key === "Home" || at < 0 ? (event.key === "Home" || step > 0 ? 0 : rows.length - 1) : Math.max(0, Math.min(rows.length - 1, at + step));
       choose(rows[next]);
       if (rows[next]) virtual.scrollToIndex(next, { align: "auto" });
     } else if (event.key === "Enter" && rows[at]) {
@@ -125,8 +125,8 @@ export function GapLedger({ view, setView }: { view: LedgerView; setView: (view:
                 id={`gap-${number}`}
                 role="option"
                 aria-selected={chosen}
-                aria-expanded={open === id}
-                aria-label={rowSentence(row, name, length)}
+                data-open={open === id || undefined}
+                aria-label={open === id ? `${rowSentence(row, name, length)}. ${sharesSentence(gap, length)}` : rowSentence(row, name, length)}
                 aria-setsize={rows.length}
                 aria-posinset={item.index + 1}
                 className={classes("absolute inset-x-0 cursor-pointer border-b border-hair", chosen ? "bg-lit shadow-[inset_3px_0_0_0_var(--ink)]" : "hover:bg-lit")}

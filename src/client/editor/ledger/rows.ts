@@ -46,3 +46,6 @@ export function ledgerRows(report: GapReport, name: (key: string) => string, sho
 export function rowSentence({ gap, number }: LedgerRow, name: (key: string) => string, length: (mm: number) => string): string {
   return `${number}, ${gap.verdict}: ${name(gap.a)} and ${name(gap.b)}, drawn ${length(gap.distance)}, worst ${length(gap.worst)}, need ${length(gap.required)}, margin ${length(gap.margin)}, because ${gap.why}${gap.provisional ? "; one of them is an estimate" : ""}`;
 }
+
+/** What stands behind a margin, in one sentence: read aloud where the row is opened. */
+export const sharesSentence = ({ shares }: Gap, length: (mm: number) => string): string => `From drawn to worst: ${length(shares.movement)} by movement, ${length(shares.plusMinus)} by plus-minus, ${length(shares.growth)} by growth when hot`;

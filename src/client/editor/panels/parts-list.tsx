@@ -162,8 +162,9 @@ function Row({ item, selected, active, verdict, hidden, mayLock, choose, hover, 
       <span className="truncate">{item.name}</span>
       <span className={classes("ml-auto truncate text-sm", selected ? "" : "text-pencil")}>{[item.note, item.locked && "locked"].filter(Boolean).join(", ")}</span>
       <span className="flex shrink-0 gap-2 pr-1 text-sm opacity-0 group-hover:opacity-100 pointer-coarse:opacity-100" aria-hidden="true">
-        <button type="button" tabIndex={-1} className="underline decoration-hair underline-offset-2" onClick={(event) => act(event, hide)}>{hidden ? "show" : "hide"}</button>
-        {mayLock && <button type="button" tabIndex={-1} className="underline decoration-hair underline-offset-2" onClick={(event) => act(event, lock)}>{item.locked ? "free" : "lock"}</button>}
+        {/* for the pointer only: an option may hold no buttons, and the ticket's menu does the same for everybody */}
+        <span className="underline decoration-hair underline-offset-2" onClick={(event) => act(event, hide)}>{hidden ? "show" : "hide"}</span>
+        {mayLock && <span className="underline decoration-hair underline-offset-2" onClick={(event) => act(event, lock)}>{item.locked ? "free" : "lock"}</span>}
       </span>
     </div>
   );

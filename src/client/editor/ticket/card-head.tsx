@@ -54,7 +54,7 @@ export function CardHead({ form, list, kind, kinds, mirrorOf }: {
       </div>
       <div className="flex items-baseline gap-1.5 text-pencil">
         {kinds && kind !== undefined && (form.may ? (
-          <select aria-label="Kind" className="cursor-pointer appearance-none border-b border-dotted border-pencil bg-transparent" value={kind} onChange={(event) => void put(["kind"], event.target.value, "kind")}>
+          <select aria-label="Kind" className="min-h-6 cursor-pointer appearance-none border-b border-dotted border-pencil bg-transparent" value={kind} onChange={(event) => void put(["kind"], event.target.value, "kind")}>
             {kinds.map(([key, word]) => <option key={key} value={key} className="bg-lit">{word}</option>)}
           </select>
         ) : <span>{kindWord(kind)}</span>)}

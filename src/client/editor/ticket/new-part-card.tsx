@@ -52,7 +52,11 @@ export function NewPartCard() {
       <TicketRow label="name"><TextEntry label="Name" value={name} give={(to) => (to ? void setName(to) : "it needs a name")} /></TicketRow>
       <TicketRow label="kind"><Choice label="Kind" value={kind} options={PART_KIND_CHOICES} give={(to) => void setKind(to)} /></TicketRow>
       <TicketRow label="size from"><Choice label="Size from" value={how} options={SOURCE_CHOICES} give={(to) => void setHow(to)} /></TicketRow>
-      <SolidForm solid={solid} placed={false} give={(next) => void setSolid(next)} />
+      <SolidForm solid={solid} placed={false} give={(next) => {
+        const wrongShape = faultOf(next);
+        if (!wrongShape) setSolid(next);
+        return wrongShape;
+      }} />
       <TicketRow label="rear of Front axle"><LengthEntry label="Front face, rear of Front axle" suffix="front face" mm={front} give={(mm) => void setFront(mm)} /></TicketRow>
       <TicketRow label="right of centre"><LengthEntry label="Its middle, right of centre" suffix="middle" mm={middle} give={(mm) => void setMiddle(mm)} /></TicketRow>
       <TicketRow label="above zero plane"><LengthEntry label="Lowest point above the chassis zero plane" suffix="lowest" mm={lowest} give={(mm) => void setLowest(mm)} /></TicketRow>
@@ -63,4 +67,14 @@ export function NewPartCard() {
       </div>
     </form>
   );
+}
+
+/** Why a shape cannot be: an outline that crosses itself, outlines with nothing in common. Said at its field, before it is placed. */
+function faultOf(solid: Solid): string | null {
+  try {
+    facesOf(partSchema.parse({ key: "part", name: "part", kind: "other", solids: [solid], at: [0, 0, 0], source: { how: "measured", plusMinus: 0 } }));
+    return null;
+  } catch (error) {
+    return error instanceof Error ? error.message : String(error);
+  }
 }
