@@ -1,9 +1,10 @@
 import type { Body } from "#core/geometry/body.ts";
+import { NODE, RADIUS } from "#core/geometry/compile.ts";
 import type { Rival } from "./rivals.ts";
 import type { Workload } from "./workloads.ts";
 
 /**
- * The same search as the kernel's (its trees of boxes, nearer first, the best so far as limit), with another engine
+ * The same search as the kernel's (its trees and bounds, nearer first, the best so far as limit), with another engine
  * answering for the pairs of pieces: so that engines are compared, not searches.
  */
 export function rivalSearch(rival: Rival, workload: Workload, bodies: readonly Body[]): (i: number, j: number, cutoff: number) => number {
@@ -20,7 +21,7 @@ export function rivalSearch(rival: Rival, workload: Workload, bodies: readonly B
     stack.length = 0;
     bounds.length = 0;
     stack.push(0, 0);
-    bounds.push(boxDistance(a.boxes, 0, b.boxes, 0));
+    bounds.push(nodeDistance(a.middles, 0, b.middles, 0));
     while (bounds.length > 0) {
       const bound = bounds.pop()!;
       const n = stack.pop()!;
@@ -36,13 +37,13 @@ export function rivalSearch(rival: Rival, workload: Workload, bodies: readonly B
         }
         continue;
       }
-      const splitA = left === 0 || (right !== 0 && a.middles[8 * m + 6]! >= b.middles[8 * n + 6]!);
+      const splitA = left === 0 || (right !== 0 && a.middles[NODE * m + 6]! >= b.middles[NODE * n + 6]!);
       const m1 = splitA ? m + 1 : m;
       const m2 = splitA ? right : m;
       const n1 = splitA ? n : n + 1;
       const n2 = splitA ? n : left;
-      const first = boxDistance(a.boxes, 6 * m1, b.boxes, 6 * n1);
-      const second = boxDistance(a.boxes, 6 * m2, b.boxes, 6 * n2);
+      const first = nodeDistance(a.middles, NODE * m1, b.middles, NODE * n1);
+      const second = nodeDistance(a.middles, NODE * m2, b.middles, NODE * n2);
       if (first <= second) {
         if (second <= best) {
           stack.push(m2, n2);
@@ -67,12 +68,12 @@ export function rivalSearch(rival: Rival, workload: Workload, bodies: readonly B
   };
 }
 
-/** Signed like a distance: apart the distance of the boxes, else minus the least width of their overlap. */
-function boxDistance(p: Float64Array, i: number, q: Float64Array, j: number): number {
-  const x = Math.max(q[j]! - p[i + 3]!, p[i]! - q[j + 3]!);
-  const y = Math.max(q[j + 1]! - p[i + 4]!, p[i + 1]! - q[j + 4]!);
-  const z = Math.max(q[j + 2]! - p[i + 5]!, p[i + 2]! - q[j + 5]!);
+/** How near two nodes (boxes grown by a ball) can be, signed like a distance, as the kernel's own search has it. */
+function nodeDistance(p: Float64Array, i: number, q: Float64Array, j: number): number {
+  const x = Math.abs(p[i]! - q[j]!) - (p[i + 3]! + q[j + 3]!);
+  const y = Math.abs(p[i + 1]! - q[j + 1]!) - (p[i + 4]! + q[j + 4]!);
+  const z = Math.abs(p[i + 2]! - q[j + 2]!) - (p[i + 5]! + q[j + 5]!);
   const most = Math.max(x, y, z);
-  if (most <= 0) return most;
-  return Math.sqrt((x > 0 ? x * x : 0) + (y > 0 ? y * y : 0) + (z > 0 ? z * z : 0));
+  const parted = most <= 0 ? most : Math.sqrt((x > 0 ? x * x : 0) + (y > 0 ? y * y : 0) + (z > 0 ? z * z : 0));
+  return parted - p[i + RADIUS]! - q[j + RADIUS]!;
 }

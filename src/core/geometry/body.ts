@@ -16,6 +16,7 @@ import {
   isRightCircular,
   LEAF,
   NODE,
+  RADIUS,
   RECTANGULAR,
   SEGMENT_FROM,
   SEGMENT_TO,
@@ -94,6 +95,13 @@ export function buildBody(pieces: readonly Piece[]): Body {
   const boxes = new Float64Array(6 * count);
   for (let i = 0; i < count; i++) pieceBox(body, i, boxes, 6 * i);
   growTree(body, boxes, Int32Array.from({ length: count }, (_, i) => i), 0, count, 0);
+  for (let node = nodes - 1; node >= 0; node--) {
+    const right = body.tree[2 * node]!;
+    body.middles[NODE * node + RADIUS] =
+      right === 0
+        ? body.sizes[SIZES * body.tree[2 * node + 1]!]!
+        : Math.min(body.middles[NODE * (node + 1) + RADIUS]!, body.middles[NODE * right + RADIUS]!);
+  }
   setPose(body, IDENTITY);
   for (let node = 0; node < nodes; node++) {
     const o = 6 * node;
@@ -131,6 +139,7 @@ function writePiece(body: Body, i: number, c: Compiled, at: number): number {
   }
   const half = c.core === CORE_BOX ? halfOf(c.vectors) : [0, 0, 0];
   sizes.set(half, SIZES * i + HALF);
+  if (half[0]! > 0) sizes.set(half.map((h) => 1 / h), SIZES * i + HALF + 3);
   facts[f + RECTANGULAR] = half[0]! > 0 ? 1 : 0;
   if (!c.spine) return at;
   facts[f + SPINE] = at;
@@ -256,11 +265,12 @@ export function setPose(body: Body, pose: Pose): void {
         boxes[o + 3 + k] = Math.max(boxes[l + 3 + k]!, boxes[r + 3 + k]!);
       }
     }
+    const radius = middles[NODE * node + RADIUS]!;
     for (let k = 0; k < 3; k++) {
       const low = boxes[o + k]!;
       const high = boxes[o + 3 + k]!;
       middles[NODE * node + k] = (low + high) / 2;
-      middles[NODE * node + 3 + k] = (high - low) / 2;
+      middles[NODE * node + 3 + k] = (high - low) / 2 - radius;
     }
   }
 }

@@ -167,12 +167,17 @@ export const LEAF = 8;
 export const RECTANGULAR = 9;
 export const CIRCULAR = 10;
 
-/** Lengths of a piece, mm: ball radius, spine radius, and from `HALF` the three half edges of a rectangular box. */
+/** Lengths of a piece, mm: ball radius, spine radius, and from `HALF` the three half edges of a rectangular box, then one over each. */
 export const SIZES = 8;
 export const HALF = 2;
 
-/** Numbers of a node: middle x, y, z and half extents x, y, z of its world box, and its size where the pieces were made. */
+/**
+ * Numbers of a node: middle x, y, z and half extents x, y, z of a box that, grown by a ball of the radius at `RADIUS`, holds
+ * its pieces; and at 6 the size of its world box where the pieces were made. The radius is the least of its pieces': a chain
+ * of capsules is held far closer so than by a box with corners.
+ */
 export const NODE = 8;
+export const RADIUS = 7;
 
 /**
  * Round tubes and bars: points whose hull grown by `radius` holds the piece, and whose surface is that of the piece between

@@ -1,8 +1,8 @@
 import { buildBody, setPose, type Body } from "./body.ts";
-import { FACTS, NODE, RECTANGULAR, SEGMENT_FROM, SEGMENT_TO, SIZES } from "./compile.ts";
+import { FACTS, NODE, RADIUS, RECTANGULAR, SEGMENT_FROM, SEGMENT_TO, SIZES } from "./compile.ts";
 import { separatingNormal } from "./depth-search.ts";
 import { coreDepth, depthIsCertain } from "./depth.ts";
-import { closestA, closestB, coreDistance, slabAlong } from "./gjk.ts";
+import { closestA, closestB, coreDistance, slabAlong, TOUCHING } from "./gjk.ts";
 import { pairDistance } from "./pair-distance.ts";
 import { segmentSquare } from "./segments.ts";
 import type { Piece, Pose, TravelBox } from "./piece.ts";
@@ -76,37 +76,32 @@ function writeTravel(travel: TravelBox | null): Float64Array | null {
 }
 
 /**
- * How near anything in two boxes can be, as a key that grows with the distance: apart the square of the boxes' distance,
- * else minus the least width of their overlap.
+ * How near anything in two nodes can be, mm, signed like a distance: a node is a box grown by a ball, so apart it is the
+ * boxes' distance less both radii, else minus the least width of their overlap less both radii.
  */
-function boxKey(p: Float64Array, i: number, q: Float64Array, j: number): number {
+function nodeDistance(p: Float64Array, i: number, q: Float64Array, j: number): number {
   const x = Math.abs(p[i]! - q[j]!) - (p[i + 3]! + q[j + 3]!);
   const y = Math.abs(p[i + 1]! - q[j + 1]!) - (p[i + 4]! + q[j + 4]!);
   const z = Math.abs(p[i + 2]! - q[j + 2]!) - (p[i + 5]! + q[j + 5]!);
+  return parted(x, y, z) - p[i + RADIUS]! - q[j + RADIUS]!;
+}
+
+/** The same where the second node may move by `travel`. */
+function movingNodeDistance(p: Float64Array, i: number, q: Float64Array, j: number, travel: Float64Array): number {
+  const x = Math.abs(p[i]! - q[j]! - (travel[0]! + travel[3]!) / 2) - (p[i + 3]! + q[j + 3]! + (travel[3]! - travel[0]!) / 2);
+  const y = Math.abs(p[i + 1]! - q[j + 1]! - (travel[1]! + travel[4]!) / 2) - (p[i + 4]! + q[j + 4]! + (travel[4]! - travel[1]!) / 2);
+  const z = Math.abs(p[i + 2]! - q[j + 2]! - (travel[2]! + travel[5]!) / 2) - (p[i + 5]! + q[j + 5]! + (travel[5]! - travel[2]!) / 2);
+  return parted(x, y, z) - p[i + RADIUS]! - q[j + RADIUS]!;
+}
+
+/** Distance of two boxes that are x, y, z apart (negative: overlap) along the axes. */
+function parted(x: number, y: number, z: number): number {
   // Twice the positive part, without a branch.
   const u = x + Math.abs(x);
   const v = y + Math.abs(y);
   const w = z + Math.abs(z);
   const square = u * u + v * v + w * w;
-  return square > 0 ? square / 4 : x > y ? (x > z ? x : z) : y > z ? y : z;
-}
-
-/** The same where the second box may move by `travel`. */
-function movingBoxKey(p: Float64Array, i: number, q: Float64Array, j: number, travel: Float64Array): number {
-  const x = Math.abs(p[i]! - q[j]! - (travel[0]! + travel[3]!) / 2) - (p[i + 3]! + q[j + 3]! + (travel[3]! - travel[0]!) / 2);
-  const y = Math.abs(p[i + 1]! - q[j + 1]! - (travel[1]! + travel[4]!) / 2) - (p[i + 4]! + q[j + 4]! + (travel[4]! - travel[1]!) / 2);
-  const z = Math.abs(p[i + 2]! - q[j + 2]! - (travel[2]! + travel[5]!) / 2) - (p[i + 5]! + q[j + 5]! + (travel[5]! - travel[2]!) / 2);
-  const u = x + Math.abs(x);
-  const v = y + Math.abs(y);
-  const w = z + Math.abs(z);
-  const square = u * u + v * v + w * w;
-  return square > 0 ? square / 4 : x > y ? (x > z ? x : z) : y > z ? y : z;
-}
-
-/** Keys above this cannot beat `best`. */
-function limitOf(best: number): number {
-  const most = best + SLACK;
-  return most > 0 ? most * most : most;
+  return square > 0 ? Math.sqrt(square) / 2 : x > y ? (x > z ? x : z) : y > z ? y : z;
 }
 
 /** Measures one pair of pieces and keeps it in `out` when it is nearer (or as near, and earlier). */
@@ -124,18 +119,22 @@ function measurePair(
   const enough = best + ra + rb + SLACK;
   const s = a.facts[FACTS * i + SEGMENT_FROM]!;
   const t = b.facts[FACTS * j + SEGMENT_FROM]!;
+  let core = 0;
+  let plainSegments = false;
   if (travel === null && s >= 0 && t >= 0) {
     // Two segments, or the spines that hold round pieces: most end here.
     const within = enough + a.sizes[SIZES * i + 1]! + b.sizes[SIZES * j + 1]!;
     const square = segmentSquare(a.world, s, a.facts[FACTS * i + SEGMENT_TO]!, b.world, t, b.facts[FACTS * j + SEGMENT_TO]!);
     if (square > within * within && within > 0) return best;
+    plainSegments = a.sizes[SIZES * i + 1] === 0 && b.sizes[SIZES * j + 1] === 0;
+    if (plainSegments) core = square > TOUCHING * TOUCHING ? Math.sqrt(square) : -1;
   } else if (out.pieceA >= 0 && (travel !== null || best < 0 || !((s >= 0 && b.facts[FACTS * j + RECTANGULAR] === 1) || (t >= 0 && a.facts[FACTS * i + RECTANGULAR] === 1)))) {
     // The direction of the best pair so far, as a guess of what parts this one too (or leaves it less deep): any slab
     // bounds the signed distance from below. It prunes, it never decides.
     const gap = slabAlong(a, i, b, j, travel, DIRECTION[0]!, DIRECTION[1]!, DIRECTION[2]!);
     if (gap > enough) return best;
   }
-  const core = pairDistance(a, i, b, j, travel, enough);
+  if (!plainSegments) core = pairDistance(a, i, b, j, travel, enough);
   if (core === Infinity) return best;
   // Grown cores that all but touch have a depth, and a way out that two points so near each other cannot tell.
   if (core > (ra + rb > 0 ? ALL_BUT_TOUCHING : 0)) {
@@ -252,11 +251,11 @@ function searchTrees(
   const treeA = a.tree;
   const treeB = b.tree;
   let best = bound;
-  let limit = limitOf(best);
+  let limit = best + SLACK;
   let m = 0;
   let n = 0;
   let top = 0;
-  const whole = travel === null ? boxKey(p, 0, q, 0) : movingBoxKey(p, 0, q, 0, travel);
+  const whole = travel === null ? nodeDistance(p, 0, q, 0) : movingNodeDistance(p, 0, q, 0, travel);
   if (whole > limit) return;
   for (;;) {
     const mRight = treeA[2 * m]!;
@@ -266,7 +265,7 @@ function searchTrees(
       const j = treeB[2 * n + 1]!;
       if (i !== doneA || j !== doneB) {
         best = measurePair(a, i, b, j, travel, best, out);
-        limit = limitOf(best);
+        limit = best + SLACK;
       }
     } else {
       let m1 = m;
@@ -283,11 +282,11 @@ function searchTrees(
       let first: number;
       let second: number;
       if (travel === null) {
-        first = boxKey(p, NODE * m1, q, NODE * n1);
-        second = boxKey(p, NODE * m2, q, NODE * n2);
+        first = nodeDistance(p, NODE * m1, q, NODE * n1);
+        second = nodeDistance(p, NODE * m2, q, NODE * n2);
       } else {
-        first = movingBoxKey(p, NODE * m1, q, NODE * n1, travel);
-        second = movingBoxKey(p, NODE * m2, q, NODE * n2, travel);
+        first = movingNodeDistance(p, NODE * m1, q, NODE * n1, travel);
+        second = movingNodeDistance(p, NODE * m2, q, NODE * n2, travel);
       }
       if (first <= limit) {
         if (second <= limit) {

@@ -79,7 +79,7 @@ export function segmentSquare(
 
 /**
  * Squared distance of the segment p p' and a rectangular box given by its centre and three half edges at `box` in q, and
- * their lengths at `half` in `sizes`; 0 when they meet. mm2; the segment's point goes to `onSegment`, the box's to `onBox`.
+ * their lengths and one over each at `half` in `sizes`; 0 when they meet. mm2; the segment's point goes to `onSegment`, the box's to `onBox`.
  * In the box's own axes the square of the distance along the segment is convex and quadratic between the planes of the faces,
  * so its slope is followed, piece by piece, to where it is nothing. Accuracy: rounding of the coordinates.
  */
@@ -106,15 +106,18 @@ export function segmentBoxSquare(
   const hx = sizes[half]!;
   const hy = sizes[half + 1]!;
   const hz = sizes[half + 2]!;
-  const ax = q[box + 3]! / hx;
-  const ay = q[box + 4]! / hx;
-  const az = q[box + 5]! / hx;
-  const bx = q[box + 6]! / hy;
-  const by = q[box + 7]! / hy;
-  const bz = q[box + 8]! / hy;
-  const cx = q[box + 9]! / hz;
-  const cy = q[box + 10]! / hz;
-  const cz = q[box + 11]! / hz;
+  const rx = sizes[half + 3]!;
+  const ry = sizes[half + 4]!;
+  const rz = sizes[half + 5]!;
+  const ax = q[box + 3]! * rx;
+  const ay = q[box + 4]! * rx;
+  const az = q[box + 5]! * rx;
+  const bx = q[box + 6]! * ry;
+  const by = q[box + 7]! * ry;
+  const bz = q[box + 8]! * ry;
+  const cx = q[box + 9]! * rz;
+  const cy = q[box + 10]! * rz;
+  const cz = q[box + 11]! * rz;
   // Start and course of the segment in the box's axes.
   const x = wx * ax + wy * ay + wz * az;
   const y = wx * bx + wy * by + wz * bz;
