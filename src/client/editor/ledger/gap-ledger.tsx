@@ -96,22 +96,22 @@ export function GapLedger({ view, setView }: { view: LedgerView; setView: (view:
         {HEADS.map(({ order, word, className }) => head(order, word, className))}
         <span className={MIDDLE}>because</span>
       </div>
-      <div
-        ref={scroll}
-        role="listbox"
-        aria-label={`Gap ledger, ${rows.length} ${rows.length === 1 ? "row" : "rows"}. Enter frames the pair in the drawing, space opens what stands behind its margin.`}
-        aria-activedescendant={at >= 0 ? `gap-${rows[at]!.number}` : undefined}
-        tabIndex={0}
-        className="min-h-0 flex-1 overflow-auto -outline-offset-2"
-        onKeyDown={key}
-      >
+      <div ref={scroll} className="min-h-0 flex-1 overflow-auto">
         {rows.length === 0 && (
           <p className="px-4 py-6 text-pencil">
             {report.gaps.length === 0 ? (document.parts.length + document.runs.length < 2 ? "Nothing to measure yet: place two parts and their gap stands here." : "Nothing is near anything else.") : "No row is left by this filter."}
             {report.gaps.length > 0 && <button type="button" className="ml-3 border-b border-hair hover:border-ink" onClick={() => setView({ ...WHOLE_LEDGER, order: view.order, descending: view.descending })}>Show all {report.gaps.length}</button>}
           </p>
         )}
-        <div role="presentation" className="relative" style={{ height: virtual.getTotalSize() }}>
+        <div
+          role="listbox"
+          aria-label={`Gap ledger, ${rows.length} ${rows.length === 1 ? "row" : "rows"}. Enter frames the pair in the drawing, space opens what stands behind its margin.`}
+          aria-activedescendant={at >= 0 ? `gap-${rows[at]!.number}` : undefined}
+          tabIndex={0}
+          className={classes("relative -outline-offset-2", rows.length === 0 && "hidden")}
+          style={{ height: virtual.getTotalSize() }}
+          onKeyDown={key}
+        >
           {virtual.getVirtualItems().map((item) => {
             const row = rows[item.index];
             if (!row) return null;

@@ -78,9 +78,9 @@ export function RulesPanel() {
               <td className="pl-4 pt-2 text-right text-sm text-pencil">{pairsText(used.get(`${rule.gap}|${rule.why || rule.between.join(" to ")}`) ?? 0)}</td>
               {form.may && (
                 <td className="pt-1.5 text-right text-sm">
-                  <button type="button" disabled={i === 0} className="px-1 text-pencil hover:text-ink disabled:opacity-30" onClick={() => move(i, -1)} aria-label={`Rule ${i + 1} up`}>up</button>
-                  <button type="button" disabled={i === rules.pairs.length - 1} className="px-1 text-pencil hover:text-ink disabled:opacity-30" onClick={() => move(i, 1)} aria-label={`Rule ${i + 1} down`}>down</button>
-                  <button type="button" className="px-1 text-pencil hover:text-short" onClick={() => complain(put(["pairs", i], undefined, `rule ${i + 1} taken out`))} aria-label={`Take out rule ${i + 1}`}>take out</button>
+                  <button type="button" disabled={i === 0} className="min-h-6 min-w-6 px-1 text-pencil hover:text-ink disabled:opacity-30" onClick={() => move(i, -1)} aria-label={`Rule ${i + 1} up`}>up</button>
+                  <button type="button" disabled={i === rules.pairs.length - 1} className="min-h-6 min-w-6 px-1 text-pencil hover:text-ink disabled:opacity-30" onClick={() => move(i, 1)} aria-label={`Rule ${i + 1} down`}>down</button>
+                  <button type="button" className="min-h-6 px-1 text-pencil hover:text-short" onClick={() => complain(put(["pairs", i], undefined, `rule ${i + 1} taken out`))} aria-label={`Take out rule ${i + 1}`}>take out</button>
                 </td>
               )}
             </tr>

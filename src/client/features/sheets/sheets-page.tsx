@@ -76,7 +76,7 @@ export default function SheetsPage() {
             {([["page", "whole page"], ["width", "fill the width"], ["true", "true size"]] as const).map(([value, word]) => <button key={value} type="button" aria-pressed={zoom === value} className={classes("min-h-7", zoom === value ? "border-b border-ink text-ink" : "hover:text-ink")} onClick={() => setZoom(value)}>{word}</button>)}
           </span>
         </div>
-        <div className="min-h-0 flex-1 space-y-6 overflow-auto bg-part p-5" aria-busy={busy}>
+        <div role="region" aria-label="The sheets as they print" tabIndex={0} className="min-h-0 flex-1 space-y-6 overflow-auto bg-part p-5 -outline-offset-2" aria-busy={busy}>
           {failed ? <TroubleNote error={new Error(failed)} title="The sheet cannot be drawn" /> : answer === null ? <div className="bg-white"><Loading what="Drawing the sheet" lines={14} /></div> : !answer.ok ? <TroubleNote error={new Error(answer.message)} title="This sheet cannot be drawn so" /> : answer.sheets.map((sheet, i) => (
             <figure key={i} className={classes(busy && "opacity-60", zoom === "true" ? "w-max" : zoom === "page" ? "mx-auto w-fit" : "")}>
               <div
