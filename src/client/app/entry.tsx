@@ -54,7 +54,7 @@ createRoot(document.getElementById("root")!).render(
         <RouterProvider router={router} />
       </Suspense>
       <Suspense>
-        <Toaster position="bottom-center" toastOptions={{ style: { borderRadius: 0, border: "1px solid var(--ink)", background: "var(--lit)", color: "var(--ink)", fontFamily: "var(--font-sans)", fontSize: 16, boxShadow: "none" } }} />
+        <Toaster position="bottom-center" toastOptions={{ actionButtonStyle: { borderRadius: 0, height: 30, padding: "0 12px", background: "var(--ink)", color: "var(--film)", fontSize: 15, fontWeight: 600 }, style: { borderRadius: 0, border: "1px solid var(--ink)", background: "var(--lit)", color: "var(--ink)", fontFamily: "var(--font-sans)", fontSize: 16, boxShadow: "none" } }} />
       </Suspense>
     </QueryClientProvider>
   </StrictMode>,

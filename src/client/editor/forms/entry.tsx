@@ -9,6 +9,8 @@ export type Read<T> = (typed: string) => { readonly ok: true; readonly value: T 
 export type Give<T> = (value: T) => string | null | void;
 
 interface EntryProps<T> {
+  /** The suffix stands under the line instead: where three share a row. */
+  readonly below?: boolean | undefined;
   /** Whole name, for a screen reader: "rear of Rear axle, front face". */
   readonly label: string;
   /** In the line behind what is written: a face, a unit. */
@@ -30,7 +32,7 @@ interface EntryProps<T> {
 /**
  * Something to write on, as on a job card: taken with Enter or on leaving, put back with Escape. What cannot be taken stays as typed, with the reason beneath.
  */
-export function Entry<T>({ label, suffix, text, read, give, disabled, step, words = false, placeholder, options, says }: EntryProps<T>) {
+export function Entry<T>({ label, suffix, below = false, text, read, give, disabled, step, words = false, placeholder, options, says }: EntryProps<T>) {
   const [typed, setTyped] = useState<string | null>(null);
   const [wrong, setWrong] = useState<string | null>(null);
   const id = useId();
@@ -76,7 +78,7 @@ export function Entry<T>({ label, suffix, text, read, give, disabled, step, word
           autoComplete="off"
           spellCheck={false}
           className={`written ${words ? "" : "num font-semibold"}`}
-          style={suffix ? { paddingRight: `${suffix.length * 0.42 + 0.6}em` } : undefined}
+          style={suffix && !below ? { paddingRight: `${suffix.length * 0.42 + 0.6}em` } : undefined}
           value={typed ?? (held ? text : (says ?? text))}
           onChange={(event) => {
             setTyped(event.target.value);
@@ -93,7 +95,7 @@ export function Entry<T>({ label, suffix, text, read, give, disabled, step, word
           }}
           onKeyDown={key}
         />
-        {suffix && <span aria-hidden="true" className="pointer-events-none absolute bottom-1 right-0 text-sm text-pencil">{suffix}</span>}
+        {suffix && <span aria-hidden="true" className={below ? "block text-sm leading-tight text-pencil" : "pointer-events-none absolute bottom-1 right-0 text-sm text-pencil"}>{suffix}</span>}
       </div>
       {wrong && <p id={id} role="alert" className="mt-0.5 text-sm text-short">{wrong}</p>}
     </div>
@@ -103,6 +105,7 @@ export function Entry<T>({ label, suffix, text, read, give, disabled, step, word
 interface Plain<T> {
   readonly label: string;
   readonly suffix?: string | undefined;
+  readonly below?: boolean | undefined;
   readonly give: Give<T>;
   readonly disabled?: boolean | undefined;
 }

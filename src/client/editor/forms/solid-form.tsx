@@ -21,7 +21,7 @@ export function SolidForm({ solid, give: giveSolid, disabled, placed = true }: {
   const length = (label: string, path: Path, mm: number, suffix?: string) => <LengthEntry label={label} suffix={suffix} mm={mm} disabled={disabled} give={(value) => put(path, value)} />;
   const axis = (value: "x" | "y" | "z") => <TicketRow label="lies"><Choice label="Lies" value={value} options={ALONG} disabled={disabled} give={(next) => put(["axis"], next)} /></TicketRow>;
   const three = (label: string, path: Path, at: readonly number[], words: readonly [string, string, string] = ["rear", "right", "up"]) => (
-    <TicketRow label={label}>{words.map((word, k) => <LengthEntry key={word} label={`${label}, ${word}`} suffix={word} mm={at[k]!} disabled={disabled} give={(value) => put([...path, k], value)} />)}</TicketRow>
+    <TicketRow label={label}>{words.map((word, k) => <LengthEntry key={word} below label={`${label}, ${word}`} suffix={word} mm={at[k]!} disabled={disabled} give={(value) => put([...path, k], value)} />)}</TicketRow>
   );
   const own: Record<SolidType, () => ReactNode> = {
     box: () => solid.type === "box" && three("size", ["size"], solid.size, ["long", "wide", "high"]),
@@ -88,7 +88,7 @@ export function SolidForm({ solid, give: giveSolid, disabled, placed = true }: {
       {placed && (
         <>
           {three("lies at", ["at"], solid.at)}
-          <TicketRow label="turned">{["roll", "pitch", "yaw"].map((word, k) => <NumberEntry key={word} label={`Turned, ${word}`} suffix={`° ${word}`} unit="°" value={solid.turn[k]!} disabled={disabled} give={(value) => put(["turn", k], value)} />)}</TicketRow>
+          <TicketRow label="turned">{["roll", "pitch", "yaw"].map((word, k) => <NumberEntry key={word} below label={`Turned, ${word}`} suffix={`° ${word}`} unit="°" value={solid.turn[k]!} disabled={disabled} give={(value) => put(["turn", k], value)} />)}</TicketRow>
         </>
       )}
     </div>

@@ -37,7 +37,7 @@ export function ManyCard({ keys }: { keys: readonly string[] }) {
       <p className="mb-1 border-b border-hair pb-2 text-pencil">{keys.slice(0, 6).map(name).join(", ")}{keys.length > 6 ? ` and ${keys.length - 6} more` : ""}</p>
       {may && (
         <>
-          <TicketRow label="move by">{(["rear", "right", "up"] as const).map((word, k) => <LengthEntry key={word} label={`Move by, ${word}`} suffix={word} mm={by[k]!} give={(mm) => void setBy(by.map((value, i) => (i === k ? mm : value)) as [number, number, number])} />)}</TicketRow>
+          <TicketRow label="move by">{(["rear", "right", "up"] as const).map((word, k) => <LengthEntry key={word} below label={`Move by, ${word}`} suffix={word} mm={by[k]!} give={(mm) => void setBy(by.map((value, i) => (i === k ? mm : value)) as [number, number, number])} />)}</TicketRow>
           <div className="my-2 flex gap-3">
             <Button look="main" disabled={by.every((value) => value === 0)} onClick={() => run(move, `Move ${keys.length} things`) && setBy([0, 0, 0])}>Move them</Button>
             <Button onClick={() => {

@@ -13,7 +13,7 @@ import { WorstOf } from "./worst-of.tsx";
 const WORDS = ["rear", "right", "up"] as const;
 
 function Three({ label, at, give, disabled }: { label: string; at: readonly number[]; give: (index: number, mm: number) => string | null; disabled: boolean }) {
-  return <TicketRow label={label}>{WORDS.map((word, k) => <LengthEntry key={word} label={`${label}, ${word}`} suffix={word} mm={at[k]!} disabled={disabled} give={(mm) => give(k, mm)} />)}</TicketRow>;
+  return <TicketRow label={label}>{WORDS.map((word, k) => <LengthEntry key={word} below label={`${label}, ${word}`} suffix={word} mm={at[k]!} disabled={disabled} give={(mm) => give(k, mm)} />)}</TicketRow>;
 }
 const putter = <T extends { name: string }>(form: Form<T>) => (path: Path, value: unknown, what: string) => form.put(path, value, `${form.value.name}: ${what}`);
 

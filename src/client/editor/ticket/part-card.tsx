@@ -75,7 +75,7 @@ function Card({ form, openSolid }: { form: Form<Part>; openSolid: (index: number
       <TicketFold title="Movement" note={movementText(part.movement, units)}><MovementForm form={form} /></TicketFold>
       <TicketFold title="Mass" note={part.mass === undefined ? "not known" : `${part.mass} kg`}>
         <TicketRow label="mass"><MaybeNumberEntry label="Mass" unit="kg" decimals={3} value={part.mass} disabled={!form.may} give={(kg) => put(["mass"], kg, kg === undefined ? "mass not known" : `mass ${kg} kg`)} /></TicketRow>
-        <TicketRow label="its centre">{(["rear", "right", "up"] as const).map((word, k) => <LengthEntry key={word} label={`Centre of mass, ${word}, from its own origin`} suffix={word} mm={part.massAt[k]!} disabled={!form.may} give={(mm) => put(["massAt", k], mm, "centre of mass")} />)}</TicketRow>
+        <TicketRow label="its centre">{(["rear", "right", "up"] as const).map((word, k) => <LengthEntry key={word} below label={`Centre of mass, ${word}, from its own origin`} suffix={word} mm={part.massAt[k]!} disabled={!form.may} give={(mm) => put(["massAt", k], mm, "centre of mass")} />)}</TicketRow>
       </TicketFold>
       <TicketFold title="Heat" note={heatText(part.heat)}><HeatForm form={form} /></TicketFold>
       <TicketFold title="Room for" note={part.roomFor.length === 0 ? "nothing kept free" : part.roomFor.map((room) => room.name).join(", ")}><RoomFor form={form} /></TicketFold>

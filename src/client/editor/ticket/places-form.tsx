@@ -14,10 +14,10 @@ export function PlacesForm({ form }: { form: Form<Part> }) {
   const disabled = !form.may;
   const put = (path: readonly (string | number)[], value: unknown, what: string) => form.put(path, value, `${part.name}: ${what}`);
   const three = (label: string, path: readonly (string | number)[], at: readonly number[], what: string) => (
-    <TicketRow label={label}>{WORDS.map((word, k) => <LengthEntry key={word} label={`${what}, ${label}, ${word}`} suffix={word} mm={at[k]!} disabled={disabled} give={(mm) => put([...path, k], mm, what)} />)}</TicketRow>
+    <TicketRow label={label}>{WORDS.map((word, k) => <LengthEntry key={word} below label={`${what}, ${label}, ${word}`} suffix={word} mm={at[k]!} disabled={disabled} give={(mm) => put([...path, k], mm, what)} />)}</TicketRow>
   );
   const direction = (path: readonly (string | number)[], at: readonly number[], what: string) => (
-    <TicketRow label="points">{WORDS.map((word, k) => <NumberEntry key={word} label={`${what}, direction, share ${word}`} suffix={word} unit="" decimals={3} value={at[k]!} disabled={disabled} give={(value) => put([...path, k], value, what)} />)}</TicketRow>
+    <TicketRow label="points">{WORDS.map((word, k) => <NumberEntry key={word} below label={`${what}, direction, share ${word}`} suffix={word} unit="" decimals={3} value={at[k]!} disabled={disabled} give={(value) => put([...path, k], value, what)} />)}</TicketRow>
   );
   const out = (path: readonly (string | number)[], what: string) => !disabled && <button type="button" className="text-sm text-pencil hover:text-short" onClick={() => complain(put(path, undefined, `${what} taken out`))}>take out</button>;
   const free = (taken: readonly { key: string }[], stem: string) => {
