@@ -9,6 +9,12 @@ let turnedA = new Float64Array(9 * 64);
 let turnedB = new Float64Array(9 * 64);
 let endsA = new Float64Array(3 * 64);
 let endsB = new Float64Array(3 * 64);
+/** The other body's point that is foremost against each facet's normal, moved by the travel that counts there. */
+let facing = new Float64Array(3 * 64);
+let facingB = new Float64Array(3 * 64);
+/** Edges of B that may still give less than the least width so far, and what each gives at least. */
+let kept = new Int32Array(64);
+let floors = new Float64Array(64);
 
 function turn(rotation: readonly number[], from: Float64Array, to: Float64Array, sign: number, at: Vec3 = ORIGIN): void {
   const m0 = rotation[0]!;
@@ -58,6 +64,10 @@ export function polytopeDepth(
     turnedB = new Float64Array(need);
     endsA = new Float64Array(need);
     endsB = new Float64Array(need);
+    facing = new Float64Array(need);
+    facingB = new Float64Array(need);
+    kept = new Int32Array(need);
+    floors = new Float64Array(need);
   }
   turn(a.pose.rotation, facetsA.normals, turnedA, 1);
   turn(a.pose.rotation, facetsA.corners, endsA, 1, a.pose.at);
@@ -68,6 +78,7 @@ export function polytopeDepth(
     // A facet's corner is A's support along its normal, to rounding; where that cannot win nothing else is asked.
     supportPoint(b, pieceB, -x, -y, -z, POINT, 0);
     const reach = travel === null ? 0 : travelReach(travel, x, y, z);
+    stand(facing, i, 1, travel, x, y, z);
     const width = (endsA[i]! - POINT[0]!) * x + (endsA[i + 1]! - POINT[1]!) * y + (endsA[i + 2]! - POINT[2]!) * z + reach;
     if (width < leastWidth()) tryDirection(a, pieceA, b, pieceB, travel, x, y, z);
   }
@@ -79,6 +90,7 @@ export function polytopeDepth(
     const z = turnedB[i + 2]!;
     supportPoint(a, pieceA, x, y, z, POINT, 0);
     const reach = travel === null ? 0 : travelReach(travel, x, y, z);
+    stand(facingB, i, -1, travel, x, y, z);
     const width = (POINT[0]! - endsB[i]!) * x + (POINT[1]! - endsB[i + 1]!) * y + (POINT[2]! - endsB[i + 2]!) * z + reach;
     if (width < leastWidth()) tryDirection(a, pieceA, b, pieceB, travel, x, y, z);
   }
@@ -92,7 +104,15 @@ export function polytopeDepth(
     crossWithTravel(a, pieceA, b, pieceB, travel, turnedA, facetsA.edges.length);
     crossWithTravel(a, pieceA, b, pieceB, travel, turnedB, facetsB.edges.length);
   }
+  let count = 0;
+  for (let j = 0; j < facetsB.edges.length; j += 9) {
+    const floor = floorOf(turnedB, j, endsB, facetsB.sides, facingB, -1);
+    if (floor >= leastWidth()) continue;
+    kept[count] = j;
+    floors[count++] = floor;
+  }
   for (let i = 0; i < facetsA.edges.length; i += 9) {
+    if (floorOf(turnedA, i, endsA, facetsA.sides, facing, 1) >= leastWidth()) continue;
     const ex = turnedA[i]!;
     const ey = turnedA[i + 1]!;
     const ez = turnedA[i + 2]!;
@@ -103,7 +123,9 @@ export function polytopeDepth(
     const n2y = turnedA[i + 7]!;
     const n2z = turnedA[i + 8]!;
     const looseA = n1x === 0 && n1y === 0 && n1z === 0;
-    for (let j = 0; j < facetsB.edges.length; j += 9) {
+    for (let k = 0; k < count; k++) {
+      const j = kept[k]!;
+      if (floors[k]! >= leastWidth()) continue;
       const fx = turnedB[j]!;
       const fy = turnedB[j + 1]!;
       const fz = turnedB[j + 2]!;
@@ -145,6 +167,35 @@ export function polytopeDepth(
     if (leastWidth() <= enough) return leastWidth();
   }
   return leastWidth();
+}
+
+/** Keeps the foremost point against a facet's normal n; `side` 1: of B, moved with its travel; -1: of A, moved against it. */
+function stand(to: Float64Array, at: number, side: 1 | -1, travel: Float64Array | null, x: number, y: number, z: number): void {
+  to[at] = POINT[0]! + (travel === null ? 0 : side * (x > 0 ? travel[0]! : travel[3]!));
+  to[at + 1] = POINT[1]! + (travel === null ? 0 : side * (y > 0 ? travel[1]! : travel[4]!));
+  to[at + 2] = POINT[2]! + (travel === null ? 0 : side * (z > 0 ? travel[2]! : travel[5]!));
+}
+
+/**
+ * What the width is at least along any direction in an edge's arc, or -Infinity where that is not known. The edge's end is foremost in all of the arc,
+ * and any point of the other body bounds its support: (end - point) n is a sine along the arc, so that where it is above zero at both ends it is
+ * nowhere less between them than at the lesser.
+ */
+function floorOf(edges: Float64Array, i: number, ends: Float64Array, sides: Int32Array, against: Float64Array, side: 1 | -1): number {
+  const s = (2 * i) / 9;
+  let floor = -Infinity;
+  for (let k = 0; k < 2; k++) {
+    const f = 3 * sides[s + k]!;
+    if (f < 0) continue;
+    const x = side * (ends[i / 3]! - against[f]!);
+    const y = side * (ends[i / 3 + 1]! - against[f + 1]!);
+    const z = side * (ends[i / 3 + 2]! - against[f + 2]!);
+    const first = x * edges[i + 3]! + y * edges[i + 4]! + z * edges[i + 5]!;
+    const second = x * edges[i + 6]! + y * edges[i + 7]! + z * edges[i + 8]!;
+    const least = first < second ? first : second;
+    if (least > 0 && least > floor) floor = least;
+  }
+  return floor;
 }
 
 /** What the travel of B adds to the width along n. */

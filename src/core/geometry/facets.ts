@@ -14,6 +14,8 @@ export interface Facets {
   readonly corners: Float64Array;
   /** One end of each edge. */
   readonly ends: Float64Array;
+  /** Two numbers an edge: the facets whose normals end its arc; -1 where the arc ends in none. */
+  readonly sides: Int32Array;
 }
 
 /** Share of the size under which points coincide, and within which they lie on one plane. */
@@ -62,12 +64,7 @@ export function hullFacets(given: readonly P[]): Facets | null {
   const edges: P[] = [];
   const ends: P[] = [];
   const corners: P[] = [];
-  const done = (): Facets => ({
-    normals: Float64Array.from(normals.flat()),
-    edges: Float64Array.from(edges.flat()),
-    ends: Float64Array.from(ends.flat()),
-    corners: Float64Array.from(corners.flat()),
-  });
+  const done = (): Facets => withSides(normals.flat(), edges.flat(), ends.flat(), corners.flat());
   if (points.length === 1) return done();
   const farthest = (value: (p: P) => number): P => points.reduce((a, b) => (value(b) > value(a) ? b : a));
   const end = farthest((p) => length(sub(p, points[0]!)));
@@ -242,10 +239,15 @@ function boxFacets(local: Float64Array, at: number): Facets {
     const [p, q] = [h[(k + 1) % 3]!, h[(k + 2) % 3]!];
     return [1, -1].flatMap((s) => [1, -1].flatMap((t) => [0, 1, 2].map((i) => local[at - 3 + i]! + s * p[i]! + t * q[i]!)));
   });
-  return {
-    normals: Float64Array.from(faces.flatMap((n) => [...n, ...negated(n)])),
-    edges: Float64Array.from(edges),
-    ends: Float64Array.from(ends),
-    corners: Float64Array.from(corners),
-  };
+  return withSides(faces.flatMap((n) => [...n, ...negated(n)]), edges, ends, corners);
+}
+
+/** Finds which facets' normals end the arc of each edge: they are the very same numbers. */
+function withSides(normals: readonly number[], edges: readonly number[], ends: readonly number[], corners: readonly number[]): Facets {
+  const facetOf = new Map<string, number>();
+  const key = (list: readonly number[], at: number): string => `${list[at]! + 0},${list[at + 1]! + 0},${list[at + 2]! + 0}`;
+  for (let i = 0; i < normals.length; i += 3) facetOf.set(key(normals, i), i / 3);
+  const sides: number[] = [];
+  for (let i = 0; i < edges.length; i += 9) sides.push(facetOf.get(key(edges, i + 3)) ?? -1, facetOf.get(key(edges, i + 6)) ?? -1);
+  return { normals: Float64Array.from(normals), edges: Float64Array.from(edges), ends: Float64Array.from(ends), corners: Float64Array.from(corners), sides: Int32Array.from(sides) };
 }
