@@ -85,9 +85,9 @@ export function pairDistance(a: Body, i: number, b: Body, j: number, travel: Flo
     const z = closestA[2]! - closestB[2]!;
     core = x * x + y * y + z * z;
   } else if (s >= 0 && b.facts[FACTS * j + RECTANGULAR] === 1) {
-    core = segmentBoxSquare(a.world, s, sEnd, b.world, b.facts[FACTS * j + START]!, b.sizes, SIZES * j + HALF, closestA, closestB);
+    core = segmentBoxSquare(a.world, s, sEnd, b.world, b.facts[FACTS * j + START]!, b.sizes, SIZES * j + HALF, closestA, closestB, within > 0 ? within * within : Infinity);
   } else if (t >= 0 && a.facts[FACTS * i + RECTANGULAR] === 1) {
-    core = segmentBoxSquare(b.world, t, tEnd, a.world, a.facts[FACTS * i + START]!, a.sizes, SIZES * i + HALF, closestB, closestA);
+    core = segmentBoxSquare(b.world, t, tEnd, a.world, a.facts[FACTS * i + START]!, a.sizes, SIZES * i + HALF, closestB, closestA, within > 0 ? within * within : Infinity);
   } else {
     if (!spineA && !spineB) return coreDistance(a, i, b, j, travel, enough);
     core = coreDistance(a, i, b, j, travel, within, spineA, spineB);

@@ -77,6 +77,12 @@ export function segmentSquare(
   return dx * dx + dy * dy + dz * dz;
 }
 
+/** How far the stretch from x to x + d is from -h .. h; 0 where they share a place. */
+function apartOn(x: number, d: number, h: number): number {
+  const gap = Math.abs(x + 0.5 * d) - 0.5 * Math.abs(d) - h;
+  return gap > 0 ? gap : 0;
+}
+
 /**
  * Squared distance of the segment p p' and a rectangular box given by its centre and three half edges at `box` in q, and
  * their lengths and one over each at `half` in `sizes`; 0 when they meet. mm2; the segment's point goes to `onSegment`, the box's to `onBox`.
@@ -93,6 +99,7 @@ export function segmentBoxSquare(
   half: number,
   onSegment: Float64Array,
   onBox: Float64Array,
+  limit = Infinity,
 ): number {
   const px = p[at]!;
   const py = p[at + 1]!;
@@ -125,6 +132,12 @@ export function segmentBoxSquare(
   const dx = ex * ax + ey * ay + ez * az;
   const dy = ex * bx + ey * by + ez * bz;
   const dz = ex * cx + ey * cy + ez * cz;
+  // The segment's own box in these axes is often too far already.
+  const gx = apartOn(x, dx, hx);
+  const gy = apartOn(y, dy, hy);
+  const gz = apartOn(z, dz, hz);
+  const square = gx * gx + gy * gy + gz * gz;
+  if (square > limit) return square;
   let t = 0;
   let u = beyond(x, hx);
   let v = beyond(y, hy);
