@@ -18,7 +18,7 @@ afterAll(async () => {
   await service.close();
 });
 
-const stored = async (): Promise<Layout> => ((await (await here.page.request.get(`/api${new URL(here.page.url()).pathname}`)).json()) as { document: Layout }).document;
+const stored = (): Promise<Layout> => here.document();
 const tool = (word: string) => here.page.getByRole("toolbar", { name: "Tools" }).getByRole("button", { name: word, exact: true }).click();
 const field = (label: string) => here.page.getByRole("textbox", { name: label, exact: true });
 const write = async (label: string, text: string) => {

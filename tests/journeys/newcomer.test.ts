@@ -23,11 +23,7 @@ afterAll(async () => {
   await service.close();
 });
 
-/** The document as the server has it, through the page's own sign-in. */
-const stored = async (): Promise<Layout> => {
-  const path = new URL(here.page.url()).pathname.replace(/\/(sheets|history)$/u, "");
-  return ((await (await here.page.request.get(`/api${path}`)).json()) as { document: Layout }).document;
-};
+const stored = (): Promise<Layout> => here.document();
 const part = (layout: Layout, key: string) => layout.parts.find((one) => one.key === key)!;
 const rows = () => here.page.getByRole("listbox", { name: /^Gap ledger/u }).getByRole("option").allTextContents();
 

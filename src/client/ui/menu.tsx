@@ -1,5 +1,6 @@
-import { useEffect, useId, useRef, useState, type ReactNode } from "react";
+import { useEffect, useId, useRef, type ReactNode } from "react";
 import { classes } from "./classes.ts";
+import { useOpen } from "./use-open.ts";
 
 export interface MenuItem {
   readonly label: string;
@@ -11,24 +12,12 @@ export interface MenuItem {
 
 /** A word that opens a list of things to do: arrows walk it, Escape leaves it, focus comes back. */
 export function Menu({ label, children, items, className, align = "right" }: { label: string; children: ReactNode; items: readonly MenuItem[]; className?: string; align?: "left" | "right" }) {
-  const [open, setOpen] = useState(false);
-  const root = useRef<HTMLDivElement>(null);
+  const { open, setOpen, close, root, button } = useOpen();
   const list = useRef<HTMLDivElement>(null);
-  const button = useRef<HTMLButtonElement>(null);
   const id = useId();
   useEffect(() => {
-    if (!open) return;
-    list.current?.querySelector<HTMLButtonElement>("[role=menuitem]")?.focus();
-    const outside = (event: PointerEvent) => {
-      if (!root.current?.contains(event.target as Node)) setOpen(false);
-    };
-    document.addEventListener("pointerdown", outside);
-    return () => document.removeEventListener("pointerdown", outside);
+    if (open) list.current?.querySelector<HTMLButtonElement>("[role=menuitem]")?.focus();
   }, [open]);
-  const close = () => {
-    setOpen(false);
-    button.current?.focus();
-  };
   const walk = (by: number | "first" | "last") => {
     const all = [...(list.current?.querySelectorAll<HTMLButtonElement>("[role=menuitem]") ?? [])];
     const at = all.indexOf(document.activeElement as HTMLButtonElement);

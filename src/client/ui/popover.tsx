@@ -1,24 +1,11 @@
-import { useEffect, useId, useRef, useState, type ReactNode } from "react";
+import { useId, type ReactNode } from "react";
 import { classes } from "./classes.ts";
+import { useOpen } from "./use-open.ts";
 
 /** A word that opens a small sheet beneath it; Escape and a click elsewhere close it. */
 export function Popover({ label, face, children, className, panelClassName, align = "right" }: { label: string; face: ReactNode; children: (close: () => void) => ReactNode; className?: string; panelClassName?: string; align?: "left" | "right" }) {
-  const [open, setOpen] = useState(false);
-  const root = useRef<HTMLDivElement>(null);
-  const button = useRef<HTMLButtonElement>(null);
+  const { open, setOpen, close, root, button } = useOpen();
   const id = useId();
-  useEffect(() => {
-    if (!open) return;
-    const outside = (event: PointerEvent) => {
-      if (!root.current?.contains(event.target as Node)) setOpen(false);
-    };
-    document.addEventListener("pointerdown", outside);
-    return () => document.removeEventListener("pointerdown", outside);
-  }, [open]);
-  const close = () => {
-    setOpen(false);
-    button.current?.focus();
-  };
   return (
     <div
       ref={root}

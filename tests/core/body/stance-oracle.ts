@@ -1,3 +1,4 @@
+import { seeded } from "../../support/seeded.ts";
 import { layoutSchema, type Layout } from "../../../src/core/layout/schema.ts";
 
 /**
@@ -8,16 +9,6 @@ interface Cloud {
   readonly lengths: boolean;
   readonly low: boolean;
   readonly points: readonly P3[];
-}
-
-function random(seed: number): () => number {
-  let a = seed >>> 0;
-  return () => {
-    a = (a + 0x6d2b79f5) >>> 0;
-    let t = Math.imul(a ^ (a >>> 15), 1 | a);
-    t = (t + Math.imul(t ^ (t >>> 7), 61 | t)) ^ t;
-    return ((t ^ (t >>> 14)) >>> 0) / 4294967296;
-  };
 }
 
 /** Roll about x, then pitch about y, then yaw about z, each as its own right-hand turn. */
@@ -35,7 +26,7 @@ const circle = (r: number, put: (c: number, s: number) => P3): P3[] => Array.fro
 
 /** A layout of parts, a straight pipe, a shaft and body lines about a leaning car, with points on everything's surface. */
 export function randomStanding(seed: number): { layout: Layout; clouds: Cloud[] } {
-  const next = random(seed);
+  const next = seeded(seed);
   const between = (a: number, b: number) => a + (b - a) * next();
   const wheelbase = between(2200, 2900);
   const axle = () => ({ track: 1500, rideHeight: between(90, 180), tyre: { diameter: 640, width: 225, loadedRadius: between(280, 330) } });

@@ -1,3 +1,4 @@
+import { seeded } from "../../support/seeded.ts";
 /**
  * Free litres by dice: points thrown in strata, each tried against closed-form distances to the solids. No code of the core.
  */
@@ -13,16 +14,6 @@ export interface Boot {
   readonly rear?: P2[];
   readonly wallGap: number;
   readonly partGap: number;
-}
-
-function random(seed: number): () => number {
-  let a = seed >>> 0;
-  return () => {
-    a = (a + 0x6d2b79f5) >>> 0;
-    let t = Math.imul(a ^ (a >>> 15), 1 | a);
-    t = (t + Math.imul(t ^ (t >>> 7), 61 | t)) ^ t;
-    return ((t ^ (t >>> 14)) >>> 0) / 4294967296;
-  };
 }
 
 /** Into a part's own axes: the place taken off, then yaw, pitch and roll taken back. */
@@ -59,7 +50,7 @@ function polygon(p: P2, outline: readonly P2[]): { edge: number; inside: boolean
 
 /** A space about [3000..4000] x [-500..500] x [300..800] and what lies in it, with the distance to each. */
 export function randomBoot(seed: number): { space: Boot; things: { document: object; distances: Distance[] } } {
-  const next = random(seed);
+  const next = seeded(seed);
   const between = (a: number, b: number) => a + (b - a) * next();
   const tops: P2[][] = [
     [[3000, -500], [between(3700, 4000), between(-500, -300)], [4000, 500], [3000, between(300, 500)]],
@@ -177,7 +168,7 @@ const STRATA = 64;
 
 /** Two dice in each of 64^3 boxes; the standard error from how the two of a box differ. */
 export function freeLitresByDice(space: Boot, distances: readonly Distance[], seed: number): { litres: number; error: number } {
-  const next = random(seed + 1);
+  const next = seeded(seed + 1);
   const [low, size]: [P3, P3] = [[3000, -500, 300], [1000, 1000, 500]];
   const walls = [[space.top, 0, 1], [space.side, 0, 2], [space.rear, 1, 2]] as const;
   const isFree = (p: P3): number => {

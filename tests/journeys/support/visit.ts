@@ -2,6 +2,7 @@ import { execFileSync } from "node:child_process";
 import { mkdirSync } from "node:fs";
 import { chromium, type Browser, type BrowserContext, type Page } from "playwright-core";
 import { expect } from "vitest";
+import type { Layout } from "#core/layout/schema.ts";
 
 const ARTIFACTS = new URL("../../../.artifacts/journeys/", import.meta.url).pathname;
 
@@ -33,6 +34,8 @@ export interface Visit {
   click(view: "plan" | "side" | "rear", u: number, v: number): Promise<void>;
   /** Waits until the server has everything. */
   saved(): Promise<void>;
+  /** The layout that is open, as the server has it. */
+  document(): Promise<Layout>;
   close(): Promise<void>;
 }
 
@@ -75,6 +78,10 @@ export async function visit(browser: Browser, { url, width = 1440, height = 900,
     },
     saved: async () => {
       await expect.poll(() => page.getByRole("banner").getByRole("status").first().textContent(), { timeout: 15_000 }).toMatch(/^saved/u);
+    },
+    document: async () => {
+      const path = new URL(page.url()).pathname.replace(/\/(sheets|history)$/u, "");
+      return ((await (await page.request.get(`/api${path}`)).json()) as { document: Layout }).document;
     },
     close: () => context.close(),
   };
