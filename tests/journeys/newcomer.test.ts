@@ -201,7 +201,7 @@ describe("somebody who has never been here", () => {
     await page.getByText(/sheets?, A3, 1 : 20/u).waitFor();
     const preview = (await page.locator("main svg").allTextContents()).join(" ");
     await here.picture("newcomer-7-sheet");
-    const [download] = await Promise.all([page.waitForEvent("download"), page.getByRole("link", { name: "Download the PDF" }).or(page.getByRole("button", { name: "Download the PDF" })).click()]);
+    const [download] = await Promise.all([page.waitForEvent("download", { timeout: 20_000 }), page.getByRole("link", { name: "Download the PDF" }).or(page.getByRole("button", { name: "Download the PDF" })).click()]);
     const read = readPdf(readFileSync(await download.path()));
     expect(Math.abs(read.size[0] - 420)).toBeLessThan(0.1);
     for (const said of ["General arrangement", "Left muffler", "CHECK BAR 100 mm", "SIDE, FROM THE LEFT"]) {
@@ -210,7 +210,7 @@ describe("somebody who has never been here", () => {
     }
     await page.getByLabel("Paper").selectOption("A1");
     await page.getByText(/sheets?, A1, 1 : 10/u).waitFor();
-  });
+  }, 60_000);
 
   it("signs out, and then has to sign in", async () => {
     const { page } = here;
