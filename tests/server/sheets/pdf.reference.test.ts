@@ -52,6 +52,15 @@ describe("the sheet as poppler reads it", () => {
       expect(bars).toHaveLength(1);
     });
 
+    it("keeps page, check bar and scale in inches at a scale that was asked for", async () => {
+      const inches = await sheet(`paper=${paper}&units=in&scale=50`);
+      expect(Math.abs(inches.size[0] - SIZES[paper][0])).toBeLessThan(0.1);
+      expect(Math.abs(inches.size[1] - SIZES[paper][1])).toBeLessThan(0.1);
+      expect(inches.text).toContain("1 : 50");
+      expect(inches.text).toContain("CHECK BAR 100 mm");
+      expect(horizontal(inches, 100, 0.02).length).toBeGreaterThan(0);
+    });
+
     it("embeds its letters as a subset and holds no picture", () => {
       expect(read.fonts.length).toBeGreaterThan(0);
       for (const font of read.fonts) {

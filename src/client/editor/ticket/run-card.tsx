@@ -34,7 +34,7 @@ function Card({ form }: { form: Form<Run> }) {
     <>
       <CardHead form={form} list="runs" kind={run.kind} kinds={RUN_KIND_CHOICES} mirrorOf={run.mirrorOf} />
       <TicketRow label="section">
-        <LengthEntry label="Outer diameter" suffix="outer dia." mm={run.diameter} disabled={!form.may} give={(mm) => put(["diameter"], mm, `diameter ${length(mm)}`)} />
+        <LengthEntry label="Outer diameter" suffix="dia." mm={run.diameter} disabled={!form.may} give={(mm) => put(["diameter"], mm, `diameter ${length(mm)}`)} />
         <LengthEntry label="Bend radius, to the centre line" suffix="bend" mm={run.bendRadius} disabled={!form.may} give={(mm) => put(["bendRadius"], mm, `bend radius ${length(mm)}`)} />
       </TicketRow>
       <PathLength run={run} />

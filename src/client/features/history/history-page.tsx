@@ -76,9 +76,9 @@ export default function HistoryPage() {
                 <ol>
                   {list.map((change) => (
                     <li key={change.seq} className="border-b border-hair">
-                      <div className="grid grid-cols-[48px_minmax(0,1fr)_auto] items-baseline gap-x-4 py-1.5 sm:grid-cols-[48px_64px_minmax(0,1fr)_160px_104px]">
+                      <div className="grid grid-cols-[48px_minmax(0,1fr)_auto] items-baseline gap-x-4 py-1.5 sm:grid-cols-[48px_84px_minmax(0,1fr)_160px_104px]">
                         <span className="num text-pencil">{change.seq}</span>
-                        <time dateTime={change.at} title={exactText(change.at)} className="num text-sm text-pencil max-sm:hidden">{new Date(change.at).toLocaleTimeString([], { hour: "2-digit", minute: "2-digit" })}</time>
+                        <time dateTime={change.at} title={exactText(change.at)} className="num whitespace-nowrap text-sm text-pencil max-sm:hidden">{new Date(change.at).toLocaleTimeString([], { hour: "2-digit", minute: "2-digit" })}</time>
                         <button type="button" aria-expanded={open === change.seq} className="min-w-0 text-left font-semibold hover:underline" onClick={() => setOpen(open === change.seq ? null : change.seq)}>{change.label}</button>
                         <span className="truncate text-pencil max-sm:order-last max-sm:col-start-2">{change.by.name}</span>
                         <span className="text-right"><TakeBack change={change} document={document} may={mayGive(bench, { kind: "restore", changes: invertDiff(change.diff) })} act={() => takeBack(change)} /></span>
