@@ -181,6 +181,10 @@ describe("somebody who has never been here", () => {
     await page.getByLabel("Layout file").setInputFiles(file);
     await page.getByRole("link", { name: "Brought in again" }).waitFor();
     await here.picture("newcomer-5-layouts");
+    await page.getByRole("link", { name: "Brought in again" }).click();
+    await page.locator("[data-view=plan][data-scale]").waitFor();
+    expect(await stored()).toEqual({ ...document, name: "Brought in again" });
+    await page.getByRole("link", { name: "Dunlin", exact: true }).click();
   });
 
   it("is told where a wrong file is wrong, and nothing comes of it", async () => {

@@ -1,5 +1,6 @@
 import { readFileSync } from "node:fs";
 import { createRequire } from "node:module";
+import { gzipSync } from "node:zlib";
 import type { AxeResults } from "axe-core";
 import type { Browser, Page } from "playwright-core";
 import { afterAll, beforeAll, describe, expect, it } from "vitest";
@@ -71,6 +72,35 @@ describe.each([["light", 1280, 800], ["light", 1920, 1080], ["dark", 1280, 800],
 
   it("had nothing to complain of in the console", () => {
     expect(here.complaints).toEqual([]);
+  });
+});
+
+describe("what is fetched, gzipped", () => {
+  it("stays within the budgets: the first page 120 kB of script, 15 kB of style, four letter files of 90 kB; the bench's own page 160 kB", async () => {
+    const here = await visit(browser, { url: service.url });
+    const fetched: string[] = [];
+    here.page.on("response", (response) => fetched.push(new URL(response.url()).pathname));
+    const kilobytes = (paths: readonly string[], ending: string) => {
+      const files = [...new Set(paths)].filter((path) => path.startsWith("/assets/") && path.endsWith(ending));
+      const bytes = files.map((path) => readFileSync(`dist/client${path}`));
+      return { count: files.length, size: bytes.reduce((sum, file) => sum + (ending === ".woff2" ? file.length : gzipSync(file).length), 0) / 1000 };
+    };
+    await here.page.goto("/sign-in");
+    await here.page.getByRole("button", { name: /^owner/iu }).waitFor();
+    await here.page.waitForLoadState("networkidle");
+    const first = [...fetched];
+    expect(kilobytes(first, ".js").count).toBeGreaterThan(0);
+    expect(kilobytes(first, ".js").size).toBeLessThan(120);
+    expect(kilobytes(first, ".css").size).toBeLessThan(15);
+    await here.openBench();
+    await here.page.waitForLoadState("networkidle");
+    const letters = kilobytes(fetched, ".woff2");
+    expect(letters.count).toBeLessThanOrEqual(4);
+    expect(letters.size).toBeLessThan(90);
+    const page = kilobytes(fetched.filter((path) => path.includes("bench-page")), ".js");
+    expect(page.count).toBe(1);
+    expect(page.size).toBeLessThan(160);
+    await here.close();
   });
 });
 

@@ -1,15 +1,20 @@
 import type { z } from "zod";
-import type { Endpoint } from "#contracts/endpoint.ts";
+import { ADDRESSES, type EndpointName } from "#contracts/addresses.ts";
+import type * as builds from "#contracts/builds.contract.ts";
 import type { ErrorBody } from "#contracts/errors.ts";
+import type * as layouts from "#contracts/layouts.contract.ts";
+import type * as reports from "#contracts/reports.contract.ts";
+import type * as signIn from "#contracts/sign-in.contract.ts";
 import { CallError } from "./call-error.ts";
 
 export { CallError };
 
-
-type Input<E extends Endpoint> = {
-  params?: z.input<E["params"]>;
-  query?: z.input<E["query"]>;
-  body?: z.input<E["body"]>;
+/** The contracts, as types alone: their schemas are not loaded here. */
+type Contracts = typeof builds & typeof layouts & typeof reports & typeof signIn;
+type Input<Name extends EndpointName> = {
+  params?: z.input<Contracts[Name]["params"]>;
+  query?: z.input<Contracts[Name]["query"]>;
+  body?: z.input<Contracts[Name]["body"]>;
   /** The body as text that is JSON already, such as a file. */
   text?: string;
   signal?: AbortSignal;
@@ -19,8 +24,8 @@ type Input<E extends Endpoint> = {
 const PATIENCE = 30_000;
 
 /** The address of an endpoint with its parameters filled in. */
-export function addressOf(endpoint: Pick<Endpoint, "path">, params: object = {}, query: object = {}): string {
-  const path = endpoint.path.replace(/:([A-Za-z]+)/g, (_, name: string) => encodeURIComponent(String((params as Record<string, unknown>)[name])));
+export function addressOf(name: EndpointName, params: object = {}, query: object = {}): string {
+  const path = ADDRESSES[name][1].replace(/:([A-Za-z]+)/g, (_, name: string) => encodeURIComponent(String((params as Record<string, unknown>)[name])));
   const search = new URLSearchParams(Object.entries(query).filter(([, value]) => value !== undefined).map(([key, value]) => [key, String(value)])).toString();
   return search ? `${path}?${search}` : path;
 }
@@ -29,23 +34,24 @@ export function addressOf(endpoint: Pick<Endpoint, "path">, params: object = {},
  * Calls an endpoint. Writes are JSON from this page only: the cookie is SameSite, and the server refuses a write that the browser says comes from elsewhere.
  * @throws CallError with the server's code, message and fields; "offline" where no answer came; what an abort throws
  */
-export async function call<E extends Endpoint>(endpoint: E, input: Input<E> = {}): Promise<z.output<E["response"]>> {
+export async function call<Name extends EndpointName>(name: Name, input: Input<Name> = {}): Promise<z.output<Contracts[Name]["response"]>> {
+  const method = ADDRESSES[name][0];
   const patience = AbortSignal.timeout(PATIENCE);
   let response: Response;
   let json: unknown;
   try {
-    const init: RequestInit = { method: endpoint.method, credentials: "same-origin", headers: { Accept: "application/json" }, signal: input.signal ? AbortSignal.any([input.signal, patience]) : patience };
-    if (endpoint.method !== "GET") {
+    const init: RequestInit = { method, credentials: "same-origin", headers: { Accept: "application/json" }, signal: input.signal ? AbortSignal.any([input.signal, patience]) : patience };
+    if (method !== "GET") {
       init.headers = { ...init.headers, "Content-Type": "application/json" };
       init.body = input.text ?? JSON.stringify(input.body ?? {});
     }
-    response = await fetch(addressOf(endpoint, input.params as object, input.query as object), init);
+    response = await fetch(addressOf(name, input.params as object, input.query as object), init);
     json = await response.json().catch(() => null);
   } catch (error) {
     if (input.signal?.aborted) throw error;
     throw new CallError("offline", "The server cannot be reached.");
   }
-  if (response.ok) return json as z.output<E["response"]>;
+  if (response.ok) return json as z.output<Contracts[Name]["response"]>;
   if (!isErrorBody(json)) throw new CallError(response.status >= 502 ? "offline" : "failed", response.status >= 502 ? "The server cannot be reached." : "The server answered in a way that cannot be read.");
   throw new CallError(json.error.code, json.error.message, json.error);
 }

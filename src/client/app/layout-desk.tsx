@@ -2,8 +2,7 @@ import { useQuery } from "@tanstack/react-query";
 import { Suspense, useEffect, useMemo, useState } from "react";
 import { Outlet, useParams } from "react-router-dom";
 import { useStore } from "zustand";
-import { getBuild, listMembers, type Build } from "#contracts/builds.contract.ts";
-import { getLayout } from "#contracts/layouts.contract.ts";
+import type { Build } from "#contracts/builds.contract.ts";
 import type { Layout } from "#core/layout/schema.ts";
 import { call, CallError } from "../api/call.ts";
 import { BenchContext, type Bench } from "../editor/bench-context.tsx";
@@ -33,9 +32,9 @@ const LOOK_AGAIN = 8_000;
 export default function LayoutDesk() {
   const { buildId = "", layoutId = "" } = useParams();
   const me = useMe();
-  const build = useQuery({ queryKey: ["build", buildId], queryFn: () => call(getBuild, { params: { buildId } }) });
+  const build = useQuery({ queryKey: ["build", buildId], queryFn: () => call("getBuild", { params: { buildId } }) });
   // read once: from then on the document store is the truth here, and follows the server by its changes
-  const layout = useQuery({ queryKey: ["layout", layoutId], queryFn: () => call(getLayout, { params: { buildId, layoutId } }), staleTime: Infinity, gcTime: 0, refetchOnWindowFocus: false, refetchOnReconnect: false });
+  const layout = useQuery({ queryKey: ["layout", layoutId], queryFn: () => call("getLayout", { params: { buildId, layoutId } }), staleTime: Infinity, gcTime: 0, refetchOnWindowFocus: false, refetchOnReconnect: false });
   const error = build.error ?? layout.error;
   if (error instanceof CallError && error.code === "not-found") return <NotFound what="layout" />;
   if (error) return <><Header /><main id="main" className="mx-auto max-w-2xl px-6 py-16"><TroubleNote error={error} title="The layout could not be opened" again={() => void (build.refetch(), layout.refetch())} /></main></>;
@@ -92,7 +91,7 @@ function Desk({ build, layoutId, archived, open }: { build: Build; layoutId: str
   const name = useStore(store.state, (state) => state.document.name);
   const unsent = useStore(store.state, (state) => state.waiting.length);
   const spaces = useStore(reports.state, (state) => state.spaces);
-  const members = useQuery({ queryKey: ["members", build.id], queryFn: () => call(listMembers, { params: { buildId: build.id } }) });
+  const members = useQuery({ queryKey: ["members", build.id], queryFn: () => call("listMembers", { params: { buildId: build.id } }) });
   useTitle(name, build.name);
   // the theme is on the page after this component's layout effects: the canvas's inks are read then
   const [inks, setInks] = useState(readInks);

@@ -1,4 +1,4 @@
-import { useRouteError } from "react-router-dom";
+import { Component, type ReactNode } from "react";
 import { Button, ButtonLink } from "../ui/button.tsx";
 import { HandbreadthMark } from "../ui/mark.tsx";
 import { Header } from "./header.tsx";
@@ -21,9 +21,18 @@ export function NotFound({ what = "page" }: { what?: string }) {
   );
 }
 
-/** What the router shows where a page broke: nothing that waits to be sent is lost by it. */
-export function BrokenPage() {
-  const error = useRouteError();
+/** Shows a page that broke as broken, with the ways on; going elsewhere (another `place`) tries again. */
+export class Unbroken extends Component<{ readonly place: string; readonly children: ReactNode }, { readonly error: unknown; readonly place: string }> {
+  override state = { error: null as unknown, place: this.props.place };
+  static getDerivedStateFromError = (error: unknown) => ({ error });
+  static getDerivedStateFromProps = (props: { readonly place: string }, state: { readonly place: string }) => (props.place === state.place ? null : { error: null, place: props.place });
+  override render() {
+    return this.state.error === null ? this.props.children : <BrokenPage error={this.state.error} />;
+  }
+}
+
+/** What is shown where a page broke: nothing that waits to be sent is lost by it. */
+function BrokenPage({ error }: { error: unknown }) {
   const stale = error instanceof Error && /dynamically imported module|Failed to fetch|Importing a module/i.test(error.message);
   return (
     <main className="mx-auto max-w-2xl px-6 py-16">

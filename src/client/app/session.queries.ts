@@ -1,14 +1,13 @@
 import { useMutation, useQuery, useQueryClient } from "@tanstack/react-query";
-import { getMe, setPreferences, signIn, signInDemo, signOut } from "#contracts/sign-in.contract.ts";
 import type { LengthUnit } from "#core/units/parse-length.ts";
 import { call } from "../api/call.ts";
 
-export const useMe = () => useQuery({ queryKey: ["me"], queryFn: () => call(getMe), staleTime: 5 * 60_000 });
+export const useMe = () => useQuery({ queryKey: ["me"], queryFn: () => call("getMe"), staleTime: 5 * 60_000 });
 
 export function useSignIn() {
   const client = useQueryClient();
   return useMutation({
-    mutationFn: (input: { email: string; password?: string }) => (input.password === undefined ? call(signInDemo, { body: { email: input.email } }) : call(signIn, { body: { email: input.email, password: input.password } })),
+    mutationFn: (input: { email: string; password?: string }) => (input.password === undefined ? call("signInDemo", { body: { email: input.email } }) : call("signIn", { body: { email: input.email, password: input.password } })),
     onSuccess: async () => {
       client.removeQueries({ predicate: (query) => query.queryKey[0] !== "me" });
       await client.invalidateQueries({ queryKey: ["me"] });
@@ -19,7 +18,7 @@ export function useSignIn() {
 export function useSignOut() {
   const client = useQueryClient();
   return useMutation({
-    mutationFn: () => call(signOut),
+    mutationFn: () => call("signOut"),
     onSettled: async () => {
       client.removeQueries({ predicate: (query) => query.queryKey[0] !== "me" });
       await client.invalidateQueries({ queryKey: ["me"] });
@@ -34,8 +33,8 @@ export function usePreferences() {
   const client = useQueryClient();
   const me = useMe();
   const change = useMutation({
-    mutationFn: (body: { units?: LengthUnit; theme?: Theme }) => call(setPreferences, { body }),
-    onMutate: (body) => client.setQueryData<Awaited<ReturnType<typeof call<typeof getMe>>>>(["me"], (old) => (old?.person ? { ...old, person: { ...old.person, ...body } } : old)),
+    mutationFn: (body: { units?: LengthUnit; theme?: Theme }) => call("setPreferences", { body }),
+    onMutate: (body) => client.setQueryData<Awaited<ReturnType<typeof call<"getMe">>>>(["me"], (old) => (old?.person ? { ...old, person: { ...old.person, ...body } } : old)),
   });
   return { units: me.data?.person?.units ?? "mm", theme: me.data?.person?.theme ?? ("system" as Theme), change: change.mutate };
 }

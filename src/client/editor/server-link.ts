@@ -1,4 +1,3 @@
-import { listChanges, postCommand } from "#contracts/layouts.contract.ts";
 import { call, CallError } from "../api/call.ts";
 import type { Link, Meaning, TheirChange, Waiting } from "./document-store.ts";
 
@@ -6,11 +5,11 @@ import type { Link, Meaning, TheirChange, Waiting } from "./document-store.ts";
 export function serverLink(buildId: string, layoutId: string): Link {
   const params = { buildId, layoutId };
   return {
-    send: (waiting: Waiting) => call(postCommand, { params, body: { commandId: waiting.commandId, base: waiting.base, command: waiting.command, label: waiting.label.slice(0, 200) } }),
+    send: (waiting: Waiting) => call("postCommand", { params, body: { commandId: waiting.commandId, base: waiting.base, command: waiting.command, label: waiting.label.slice(0, 200) } }),
     async changesAfter(seq) {
       const all: TheirChange[] = [];
       for (let after = seq; ; ) {
-        const { changes, more } = await call(listChanges, { params, query: { after, limit: 200 } });
+        const { changes, more } = await call("listChanges", { params, query: { after, limit: 200 } });
         all.push(...changes);
         const last = changes[changes.length - 1];
         if (!more || !last) return all;

@@ -1,6 +1,6 @@
 import type Konva from "konva";
 import { memo, useEffect, useLayoutEffect, useMemo, useRef, useState } from "react";
-import { Layer, Shape, Stage } from "react-konva";
+import { Layer, Shape, Stage } from "react-konva/lib/ReactKonvaCore.js";
 import type { View } from "#core/frames.ts";
 import { rolesFor } from "#core/layout/command-access.ts";
 import { formatLength } from "#core/units/format-length.ts";

@@ -106,6 +106,16 @@ describe("the sheet as poppler reads it", () => {
     expect(decimal.text).toMatch(/96\.85/u);
   });
 
+  it("prints the gaps' numbers as the report has them", async () => {
+    const { body: report } = await owner.get(`${path}/report`).expect(200);
+    const read = await sheet("paper=A3");
+    const rows = read.text.split("\n");
+    for (const gap of (report.gaps as { distance: number; worst: number; margin: number; verdict: string }[]).slice(0, 3)) {
+      const numbers = [gap.distance, gap.worst, gap.margin].map((value) => value.toFixed(1));
+      expect(rows.some((row) => row.includes(gap.verdict) && numbers.every((number) => row.includes(number))), numbers.join(", ")).toBe(true);
+    }
+  });
+
   it("cuts the section where it is asked to", async () => {
     const read = await sheet("paper=A3&station=2700");
     expect(read.text).toContain("SECTION A-A");

@@ -1,8 +1,7 @@
 import { useMutation, useQuery, useQueryClient } from "@tanstack/react-query";
-import { createBuild, deleteBuild, listBuilds, renameBuild } from "#contracts/builds.contract.ts";
 import { call } from "../../api/call.ts";
 
-export const useBuilds = () => useQuery({ queryKey: ["builds"], queryFn: () => call(listBuilds) });
+export const useBuilds = () => useQuery({ queryKey: ["builds"], queryFn: () => call("listBuilds") });
 
 /** Begins, renames and deletes builds; every list of them is fetched again after. */
 export function useBuildChanges() {
@@ -11,8 +10,8 @@ export function useBuildChanges() {
     await Promise.all([client.invalidateQueries({ queryKey: ["builds"] }), client.invalidateQueries({ queryKey: ["build"] })]);
   };
   return {
-    create: useMutation({ mutationFn: (name: string) => call(createBuild, { body: { name } }), onSuccess }),
-    rename: useMutation({ mutationFn: ({ buildId, name }: { buildId: string; name: string }) => call(renameBuild, { params: { buildId }, body: { name } }), onSuccess }),
-    remove: useMutation({ mutationFn: (buildId: string) => call(deleteBuild, { params: { buildId } }), onSuccess }),
+    create: useMutation({ mutationFn: (name: string) => call("createBuild", { body: { name } }), onSuccess }),
+    rename: useMutation({ mutationFn: ({ buildId, name }: { buildId: string; name: string }) => call("renameBuild", { params: { buildId }, body: { name } }), onSuccess }),
+    remove: useMutation({ mutationFn: (buildId: string) => call("deleteBuild", { params: { buildId } }), onSuccess }),
   };
 }

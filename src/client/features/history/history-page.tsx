@@ -1,7 +1,7 @@
 import { useInfiniteQuery, useQueryClient } from "@tanstack/react-query";
 import { useEffect, useMemo, useRef, useState } from "react";
 import { toast } from "sonner";
-import { listChanges, type Change } from "#contracts/layouts.contract.ts";
+import type { Change } from "#contracts/layouts.contract.ts";
 import { invertDiff, itemOf, sameValue } from "#core/layout/diff.ts";
 import type { Command } from "#core/layout/commands.ts";
 import type { Layout } from "#core/layout/schema.ts";
@@ -26,7 +26,7 @@ export default function HistoryPage() {
   const [open, setOpen] = useState<number | null>(null);
   const changes = useInfiniteQuery({
     queryKey: ["changes", layoutId], initialPageParam: undefined as number | undefined,
-    queryFn: ({ pageParam }) => call(listChanges, { params: { buildId, layoutId }, query: { limit: PAGE, before: pageParam } }),
+    queryFn: ({ pageParam }) => call("listChanges", { params: { buildId, layoutId }, query: { limit: PAGE, before: pageParam } }),
     getNextPageParam: (last) => (last.more ? last.changes[last.changes.length - 1]?.seq : undefined),
   });
   const seen = useRef(seq);

@@ -1,7 +1,7 @@
 import { useRef, useState } from "react";
 import { Link, useNavigate, useParams } from "react-router-dom";
 import { toast } from "sonner";
-import { exportLayout, type LayoutSummary } from "#contracts/layouts.contract.ts";
+import type { LayoutSummary } from "#contracts/layouts.contract.ts";
 import { addressOf, CallError } from "../../api/call.ts";
 import { Header, initialsOf } from "../../app/header.tsx";
 import { NotFound } from "../../app/not-found.tsx";
@@ -47,7 +47,7 @@ export default function LayoutsPage() {
     });
   };
   const items = (one: LayoutSummary): MenuItem[] => [
-    { label: "Export the layout file", act: () => location.assign(addressOf(exportLayout, { buildId, layoutId: one.id })) },
+    { label: "Export the layout file", act: () => location.assign(addressOf("exportLayout", { buildId, layoutId: one.id })) },
     ...(owner ? [
       { label: "Duplicate", act: () => ask({ what: "duplicate", one }) },
       { label: "Rename", act: () => ask({ what: "rename", one }), not: one.archived ? "take it out of the archive first" : undefined },

@@ -1,7 +1,6 @@
 import { useQuery } from "@tanstack/react-query";
 import { useMemo, useState } from "react";
-import { getBuild } from "#contracts/builds.contract.ts";
-import { getSheet, PAPERS } from "#contracts/reports.contract.ts";
+import { PAPER_NAMES } from "#core/drawing/paper.ts";
 import { sheetDatums } from "#core/drawing/sheet-datums.ts";
 import { formatLength } from "#core/units/format-length.ts";
 import { parseLength, type LengthUnit } from "#core/units/parse-length.ts";
@@ -15,7 +14,7 @@ import { Loading, TroubleNote } from "../../ui/states.tsx";
 import type { PlanQuestion } from "./plan-worker.ts";
 import { usePlannedSheets } from "./use-planned-sheets.ts";
 
-type Paper = (typeof PAPERS)[number];
+type Paper = (typeof PAPER_NAMES)[number];
 const SCALES = ["fit", "1", "2", "5", "10", "20", "50", "100"] as const;
 type Scale = (typeof SCALES)[number];
 const PAPER_SAYS: Record<Paper, string> = { A4: "A4, 297 x 210", A3: "A3, 420 x 297", A2: "A2, 594 x 420", A1: "A1, 841 x 594", Letter: "Letter, 11 x 8 1/2 in", Tabloid: "Tabloid, 17 x 11 in" };
@@ -24,7 +23,7 @@ const PAPER_SAYS: Record<Paper, string> = { A4: "A4, 297 x 210", A3: "A3, 420 x 
 export default function SheetsPage() {
   const { buildId, layoutId, units: mine } = useBench();
   const me = useMe();
-  const build = useQuery({ queryKey: ["build", buildId], queryFn: () => call(getBuild, { params: { buildId } }) });
+  const build = useQuery({ queryKey: ["build", buildId], queryFn: () => call("getBuild", { params: { buildId } }) });
   const document = useDocument((state) => state.document);
   const report = useDocument((state) => state.report);
   const seq = useDocument((state) => state.seq);
@@ -48,14 +47,14 @@ export default function SheetsPage() {
     };
   }, [document, report, body, mass, spaces, stanceBehind, spacesBehind, paper, scale, units, at, datum, owner, creator, seq]);
   const { answer, busy } = usePlannedSheets(question);
-  const address = addressOf(getSheet, { buildId, layoutId }, { paper, scale: scale === "fit" ? "fit" : Number(scale), units, station: at, datum: datum || undefined });
+  const address = addressOf("getSheet", { buildId, layoutId }, { paper, scale: scale === "fit" ? "fit" : Number(scale), units, station: at, datum: datum || undefined });
   const datums = useMemo(() => sheetDatums(document), [document]);
   const [zoom, setZoom] = useState<"page" | "width" | "true">("width");
   return (
     <main id="main" className="grid min-h-0 flex-1 overflow-auto lg:grid-cols-[264px_minmax(0,1fr)] lg:overflow-hidden">
       <form className="space-y-4 overflow-y-auto border-hair px-5 py-5 lg:border-r" onSubmit={(event) => event.preventDefault()} aria-label="The sheet">
         <h1 className="text-2xl font-semibold">General arrangement</h1>
-        <SelectField<Paper> label="Paper" value={paper} options={PAPERS.map((name) => ({ value: name, label: PAPER_SAYS[name] }))} onChange={setPaper} />
+        <SelectField<Paper> label="Paper" value={paper} options={PAPER_NAMES.map((name) => ({ value: name, label: PAPER_SAYS[name] }))} onChange={setPaper} />
         <SelectField<Scale> label="Scale" value={scale} options={SCALES.map((one) => ({ value: one, label: one === "fit" ? "the largest that fits" : `1 : ${one}` }))} onChange={setScale} />
         <SelectField<LengthUnit> label="Dimensions in" value={units} options={[{ value: "mm", label: "millimetres" }, { value: "in", label: "inches, decimal" }, { value: "in-fraction", label: "inches, to 1/16" }]} onChange={setUnits} />
         <SelectField label="Dimensions from" value={datum} options={[{ value: "", label: "front axle, centre, zero plane" }, ...datums.map((one) => ({ value: one.key, label: one.name }))]} onChange={setDatum} />
