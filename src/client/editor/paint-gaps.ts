@@ -1,5 +1,6 @@
 import { PROJECTION } from "#core/frames.ts";
 import type { Gap, Verdict } from "#core/gaps/gap.ts";
+import { DATUM_STRIP } from "./camera.ts";
 import { at, numberFont, type Sheet } from "./sheet.ts";
 import type { Spot, Wanting } from "./spots.ts";
 
@@ -67,7 +68,7 @@ export function paintBalloons(sheet: Sheet, balloons: readonly Balloon[], spots:
     const [bx, by] = at(sheet, gap.pointB[u], gap.pointB[v]);
     const off = spots.get(wanting.id) ?? { x: 0, y: -28 };
     const x = Math.min(sheet.width - wanting.halfWidth - 3, Math.max(wanting.halfWidth + 3, wanting.x + off.x));
-    const y = Math.min(sheet.height - HALF_HEIGHT - 3, Math.max(HALF_HEIGHT + 3, wanting.y + off.y));
+    const y = Math.min(sheet.height - HALF_HEIGHT - 3, Math.max(HALF_HEIGHT + (sheet.view === "plan" ? DATUM_STRIP : 3), wanting.y + off.y));
     ctx.strokeStyle = ink;
     ctx.beginPath();
     ctx.moveTo(wanting.x, wanting.y);

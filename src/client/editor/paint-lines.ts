@@ -53,7 +53,8 @@ export function paintSpaces(sheet: Sheet, layout: Layout, chosen: ReadonlySet<st
 
 function paintEye(sheet: Sheet, x: number, y: number, chosen: boolean): void {
   const { ctx, inks } = sheet;
-  if (x < -20 || y < -20 || x > sheet.width + 20 || y > sheet.height + 20) return;
+  // never half of it: one that looks from outside the paper is on the list
+  if (x < 9 || y < 9 || x > sheet.width - 9 || y > sheet.height - 9) return;
   ctx.beginPath();
   ctx.moveTo(x - 8, y);
   ctx.quadraticCurveTo(x, y - 8, x + 8, y);

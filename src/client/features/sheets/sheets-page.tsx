@@ -64,6 +64,7 @@ export default function SheetsPage() {
         </div>
         <a className="flex min-h-10 w-full items-center justify-center border border-ink bg-ink font-semibold text-film hover:bg-film hover:text-ink" href={address} target="_blank" rel="noreferrer">Open as PDF, to print</a>
         <a className="flex min-h-10 w-full items-center justify-center border border-ink font-semibold hover:bg-ink hover:text-film" href={address} download={`${document.name}.pdf`}>Download the PDF</a>
+        <p className="text-sm text-pencil">The server draws the PDF anew after a change: a few seconds before it begins.</p>
         {unsent > 0 && <p role="status" className="text-sm text-tight">{unsent} {unsent === 1 ? "edit is" : "edits are"} not with the server yet: this preview has {unsent === 1 ? "it" : "them"}, the PDF has not.</p>}
         <p className="text-sm text-pencil">Print at 100 %, not "fit to page", then hold a ruler to the 100 mm bar. Estimates from what was drawn: measure on the car before cutting; with heat, fuel, brakes, steering and glass follow the part maker and the local rules.</p>
         {answer?.ok && answer.remarks.map((remark) => <p key={remark} className="border border-hair px-3 py-2 text-sm">{remark}</p>)}
