@@ -99,7 +99,7 @@ export function GapLedger({ view, setView }: { view: LedgerView; setView: (view:
       <div ref={scroll} className="min-h-0 flex-1 overflow-auto">
         {rows.length === 0 && (
           <p className="px-4 py-6 text-pencil">
-            {report.gaps.length === 0 ? (document.parts.length + document.runs.length < 2 ? "Nothing to measure yet: place two parts and their gap stands here." : "Nothing is near anything else.") : "No row is left by this filter."}
+            {report.gaps.length === 0 ? (document.parts.length + document.runs.length < 2 ? "Nothing to measure yet. Take \"Part\" above the plan and give a first part its sizes; with the second one their gap stands here." : "Nothing is near anything else.") : "No row is left by this filter."}
             {report.gaps.length > 0 && <button type="button" className="ml-3 border-b border-hair hover:border-ink" onClick={() => setView({ ...WHOLE_LEDGER, order: view.order, descending: view.descending })}>Show all {report.gaps.length}</button>}
           </p>
         )}
@@ -160,7 +160,7 @@ export function GapLedger({ view, setView }: { view: LedgerView; setView: (view:
         </div>
         {rows.length > 0 && (
           <p className="px-4 py-3 text-sm text-pencil">
-            {report.trusted.length > 0 && <>{report.trusted.length} pairs that are meant to touch are left out. </>}
+            {report.trusted.length > 0 && <>{report.trusted.length === 1 ? "One pair that is meant to touch is left out." : `${report.trusted.length} pairs that are meant to touch are left out.`} </>}
             Estimates from what was drawn. Measure on the car before cutting; with heat, fuel, brakes and steering follow the part maker and the local rules, and have a licensed person check. <Link className="border-b border-hair hover:border-ink" to={paths.method}>How a gap is found</Link>
           </p>
         )}

@@ -13,6 +13,8 @@ import { select, useViewState } from "../view-state.ts";
 import { complain } from "./part-card.tsx";
 import { TicketFold, TicketRow, TicketSays } from "./ticket-row.tsx";
 
+const counted = (n: number, what: string): string => `${n === 0 ? "no" : n} ${what}${n === 1 ? "" : "s"}`;
+
 /** With nothing selected the ticket is the layout's own: its chassis, datums, body lines, air, contacts and notes. */
 export function LayoutCard() {
   const { units, role } = useBench();
@@ -30,9 +32,9 @@ export function LayoutCard() {
         <div className="text-xl font-semibold [&_.written]:border-b-transparent [&_.written:focus]:border-b-ink [&_.written:hover]:border-b-hair">
           <TextEntry label="Name of the layout" value={form.value.name} disabled={!form.may} give={(name) => form.put(["name"], name, `Layout renamed to ${name}`)} />
         </div>
-        <p className="text-pencil">{document.parts.length} parts, {document.runs.length} runs, {document.spaces.length} {document.spaces.length === 1 ? "space" : "spaces"}</p>
+        <p className="text-pencil">{counted(document.parts.length, "part")}, {counted(document.runs.length, "run")}, {counted(document.spaces.length, "space")}</p>
       </div>
-      <TicketSays label="it says">{wrong === 0 ? "Nothing breaks a rule." : <><b>{wrong}</b> {wrong === 1 ? "gap breaks" : "gaps break"} a rule, {counts.tight} {counts.tight === 1 ? "is" : "are"} tight. Choose a row of the ledger, or a part in the drawing.</>}</TicketSays>
+      <TicketSays label="it says">{document.parts.length + document.runs.length === 0 ? "A bare chassis. Its numbers first, below; then the parts, by their sizes or by their outlines." : wrong === 0 ? "Nothing breaks a rule." : <><b>{wrong}</b> {wrong === 1 ? "gap breaks" : "gaps break"} a rule, {counts.tight} {counts.tight === 1 ? "is" : "are"} tight. Choose a row of the ledger, or a part in the drawing.</>}</TicketSays>
       <TicketFold title="Chassis" note={`wheelbase ${length(chassis.value.wheelbase)}`}><ChassisForm /></TicketFold>
       <TicketFold title="Datums" note={chassis.value.datums.length === 0 ? "axles, centre, ground" : chassis.value.datums.map((datum) => datum.name).join(", ")}><Datums /></TicketFold>
       <TicketFold title="Body lines" note={[body.value.side && "side", body.value.top && "above", body.value.rear && "behind", body.value.sections.length > 0 && `${body.value.sections.length} sections`].filter(Boolean).join(", ") || "not drawn"}><BodyForm /></TicketFold>
@@ -40,7 +42,7 @@ export function LayoutCard() {
         <TicketRow label="air"><NumberEntry label="Air in the bay" unit="°C" value={air.value.temperature} disabled={!air.may} give={(value) => air.put(["temperature"], value, `Bay air ${value} °C`)} /><NumberEntry label="Air speed" unit="m/s" value={air.value.speed} disabled={!air.may} give={(value) => air.put(["speed"], value, `Air speed ${value} m/s`)} /></TicketRow>
         <TicketRow label="surroundings"><NumberEntry label="Surroundings" unit="°C" value={air.value.surroundings} disabled={!air.may} give={(value) => air.put(["surroundings"], value, `Surroundings ${value} °C`)} /></TicketRow>
       </TicketFold>
-      <TicketFold title="Contacts" note={`${document.contacts.length} pairs meant to touch`}><Contacts /></TicketFold>
+      <TicketFold title="Contacts" note={document.contacts.length === 1 ? "one pair meant to touch" : `${document.contacts.length} pairs meant to touch`}><Contacts /></TicketFold>
       <TicketFold title="Add something else" note="space, luggage, glass, eye, shaft"><AddOther /></TicketFold>
       <TicketFold title="Notes" note={form.value.notes.slice(0, 40)}><Notes value={form.value.notes} disabled={!form.may} give={(notes) => form.put(["notes"], notes, "Notes changed")} /></TicketFold>
       {role !== "owner" && <p className="pt-2 text-sm text-pencil">{ROLE_SAYS[role]}</p>}
