@@ -1,22 +1,13 @@
-import type { Browser } from "playwright-core";
-import { afterAll, beforeAll, describe, expect, it } from "vitest";
+import { beforeAll, describe, expect, it } from "vitest";
 import type { Layout, Solid } from "#core/layout/schema.ts";
-import { startService, type Service } from "../support/service.ts";
-import { openBrowser, visit, type Visit } from "./support/visit.ts";
+import { journey, visit, type Visit } from "./support/visit.ts";
 
-let service: Service;
-let browser: Browser;
+const running = journey();
 let here: Visit;
 beforeAll(async () => {
-  service = await startService({ site: true });
-  browser = await openBrowser();
-  here = await visit(browser, { url: service.url, width: 1600, height: 1150 });
+  here = await visit(running.browser, { url: running.service.url, width: 1600, height: 1150 });
   await here.openBench();
-}, 120_000);
-afterAll(async () => {
-  await browser.close();
-  await service.close();
-});
+}, 60_000);
 
 const stored = (): Promise<Layout> => here.document();
 const tool = (word: string) => here.page.getByRole("toolbar", { name: "Tools" }).getByRole("button", { name: word, exact: true }).click();

@@ -2,26 +2,17 @@ import { readFileSync, writeFileSync } from "node:fs";
 import { mkdtempSync } from "node:fs";
 import { tmpdir } from "node:os";
 import { join } from "node:path";
-import type { Browser } from "playwright-core";
-import { afterAll, beforeAll, describe, expect, it } from "vitest";
+import { beforeAll, describe, expect, it } from "vitest";
 import { parseLayout } from "#core/layout/parse-layout.ts";
 import type { Layout } from "#core/layout/schema.ts";
 import { readPdf } from "../support/pdf.ts";
-import { startService, type Service } from "../support/service.ts";
-import { openBrowser, visit, type Visit } from "./support/visit.ts";
+import { journey, visit, type Visit } from "./support/visit.ts";
 
-let service: Service;
-let browser: Browser;
+const running = journey();
 let here: Visit;
 beforeAll(async () => {
-  service = await startService({ site: true });
-  browser = await openBrowser();
-  here = await visit(browser, { url: service.url, width: 1600, height: 1000 });
-}, 120_000);
-afterAll(async () => {
-  await browser.close();
-  await service.close();
-});
+  here = await visit(running.browser, { url: running.service.url, width: 1600, height: 1000 });
+}, 60_000);
 
 const stored = (): Promise<Layout> => here.document();
 const part = (layout: Layout, key: string) => layout.parts.find((one) => one.key === key)!;

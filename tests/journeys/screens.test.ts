@@ -2,23 +2,13 @@ import { readFileSync } from "node:fs";
 import { createRequire } from "node:module";
 import { gzipSync } from "node:zlib";
 import type { AxeResults } from "axe-core";
-import type { Browser, Page } from "playwright-core";
+import type { Page } from "playwright-core";
 import { afterAll, beforeAll, describe, expect, it } from "vitest";
-import { startService, type Service } from "../support/service.ts";
-import { openBrowser, visit, type Visit } from "./support/visit.ts";
+import { journey, visit, type Visit } from "./support/visit.ts";
 
 const AXE = readFileSync(createRequire(import.meta.url).resolve("axe-core/axe.min.js"), "utf8");
 
-let service: Service;
-let browser: Browser;
-beforeAll(async () => {
-  service = await startService({ site: true });
-  browser = await openBrowser();
-}, 120_000);
-afterAll(async () => {
-  await browser.close();
-  await service.close();
-});
+const running = journey();
 
 /** What axe-core finds against WCAG 2.2 A and AA, as "rule: element"; all but its one experimental rule. */
 async function findings(page: Page): Promise<string[]> {
@@ -49,7 +39,7 @@ describe.each([["light", 1280, 800], ["light", 1920, 1080], ["dark", 1280, 800],
   let here: Visit;
   let bench: string;
   beforeAll(async () => {
-    here = await visit(browser, { url: service.url, width, height, theme });
+    here = await visit(running.browser, { url: running.service.url, width, height, theme });
     await here.page.goto("/sign-in");
     await here.page.getByRole("button", { name: /^owner/iu }).waitFor();
     await here.picture(`screen-sign-in-${theme}-${width}`);
@@ -77,7 +67,7 @@ describe.each([["light", 1280, 800], ["light", 1920, 1080], ["dark", 1280, 800],
 
 describe("what is fetched, gzipped", () => {
   it("stays within the budgets: the first page 120 kB of script, 15 kB of style, four letter files of 90 kB; the bench's own page 160 kB", async () => {
-    const here = await visit(browser, { url: service.url });
+    const here = await visit(running.browser, { url: running.service.url });
     const fetched: string[] = [];
     here.page.on("response", (response) => fetched.push(new URL(response.url()).pathname));
     const kilobytes = (paths: readonly string[], ending: string) => {
@@ -106,7 +96,7 @@ describe("what is fetched, gzipped", () => {
 
 describe("the viewer", () => {
   it("reads and prints, and finds nothing that would change something", async () => {
-    const here = await visit(browser, { url: service.url });
+    const here = await visit(running.browser, { url: running.service.url });
     await here.openBench("Viewer");
     const { page } = here;
     for (const word of ["Part", "Outline", "Run", "Space"]) expect(await page.getByRole("toolbar", { name: "Tools" }).getByRole("button", { name: word, exact: true }).count()).toBe(0);

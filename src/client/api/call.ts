@@ -25,7 +25,7 @@ const PATIENCE = 30_000;
 
 /** The address of an endpoint with its parameters filled in. */
 export function addressOf(name: EndpointName, params: object = {}, query: object = {}): string {
-  const path = ADDRESSES[name][1].replace(/:([A-Za-z]+)/g, (_, name: string) => encodeURIComponent(String((params as Record<string, unknown>)[name])));
+  const path = ADDRESSES[name][1].replace(/:([A-Za-z]+)/g, (_, key: string) => encodeURIComponent(String((params as Record<string, unknown>)[key])));
   const search = new URLSearchParams(Object.entries(query).filter(([, value]) => value !== undefined).map(([key, value]) => [key, String(value)])).toString();
   return search ? `${path}?${search}` : path;
 }

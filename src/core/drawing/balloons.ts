@@ -8,8 +8,8 @@ import { stroke } from "./pen.ts";
 export interface Tag {
   readonly text: string;
   readonly of: string;
-  /** Discs name parts and runs, lozenges gaps. */
-  readonly shape: "disc" | "lozenge";
+  /** Discs name parts and runs, squares gaps. */
+  readonly shape: "disc" | "square";
   readonly ink: string;
   /** Places it may point at, best first: paper coordinates, and how much of the thing is around, mm of paper. */
   readonly spots: readonly { readonly at: Paper; readonly depth: number }[];

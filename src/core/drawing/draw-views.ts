@@ -237,7 +237,7 @@ function drawNumbers(pen: Pen, input: ViewsInput, main: readonly Scene[], sectio
         return { scene, tags, length: Math.hypot(gap.pointA[u] - gap.pointB[u], gap.pointA[v] - gap.pointB[v]), at: onPaper(scene.frame, [middle[u], middle[v]]) };
       });
       const best = spread.reduce((a, b) => (b.length > a.length + 1e-9 ? b : a));
-      best.tags.push({ text: String(index + 1), of: `${gap.a}|${gap.b}`, shape: "lozenge", ink: VERDICT_INK[gap.verdict], spots: [{ at: best.at, depth: 0 }], weight: 1e9 - index });
+      best.tags.push({ text: String(index + 1), of: `${gap.a}|${gap.b}`, shape: "square", ink: VERDICT_INK[gap.verdict], spots: [{ at: best.at, depth: 0 }], weight: 1e9 - index });
     });
   }
   for (const { scene, tags } of shown) {

@@ -10,7 +10,7 @@ let turnedB = new Float64Array(9 * 64);
 let endsA = new Float64Array(3 * 64);
 let endsB = new Float64Array(3 * 64);
 /** The other body's point that is foremost against each facet's normal, moved by the travel that counts there. */
-let facing = new Float64Array(3 * 64);
+let facingA = new Float64Array(3 * 64);
 let facingB = new Float64Array(3 * 64);
 /** Edges of B that may still give less than the least width so far, and what each gives at least. */
 let kept = new Int32Array(64);
@@ -64,7 +64,7 @@ export function polytopeDepth(
     turnedB = new Float64Array(need);
     endsA = new Float64Array(need);
     endsB = new Float64Array(need);
-    facing = new Float64Array(need);
+    facingA = new Float64Array(need);
     facingB = new Float64Array(need);
     kept = new Int32Array(need);
     floors = new Float64Array(need);
@@ -78,7 +78,7 @@ export function polytopeDepth(
     // A facet's corner is A's support along its normal, to rounding; where that cannot win nothing else is asked.
     supportPoint(b, pieceB, -x, -y, -z, POINT, 0);
     const reach = travel === null ? 0 : travelReach(travel, x, y, z);
-    stand(facing, i, 1, travel, x, y, z);
+    stand(facingA, i, 1, travel, x, y, z);
     const width = (endsA[i]! - POINT[0]!) * x + (endsA[i + 1]! - POINT[1]!) * y + (endsA[i + 2]! - POINT[2]!) * z + reach;
     if (width < leastWidth()) tryDirection(a, pieceA, b, pieceB, travel, x, y, z);
   }
@@ -112,7 +112,7 @@ export function polytopeDepth(
     floors[count++] = floor;
   }
   for (let i = 0; i < facetsA.edges.length; i += 9) {
-    if (floorOf(turnedA, i, endsA, facetsA.sides, facing, 1) >= leastWidth()) continue;
+    if (floorOf(turnedA, i, endsA, facetsA.sides, facingA, 1) >= leastWidth()) continue;
     const ex = turnedA[i]!;
     const ey = turnedA[i + 1]!;
     const ez = turnedA[i + 2]!;

@@ -154,12 +154,6 @@ export function outlinePolyhedra(solid: Outlines): Polyhedron[] {
   return kept;
 }
 
-/** True where two or three outlines, pushed through, have a volume in common. Outlines are taken to be simple. */
-export function haveCommonVolume(solid: Outlines): boolean {
-  for (const piece of commonPieces(solid)) if (volumeOf(piece) > 0) return true;
-  return false;
-}
-
 const tooIntricate = (found: string) => new GeometryError("", `cut into ${found} convex pieces, at most ${MOST_PIECES} are allowed: use fewer corners`);
 
 function* commonPieces(solid: Outlines): Generator<Polyhedron> {

@@ -1,13 +1,28 @@
 import { execFileSync } from "node:child_process";
 import { mkdirSync } from "node:fs";
 import { chromium, type Browser, type BrowserContext, type Page } from "playwright-core";
-import { expect } from "vitest";
+import { afterAll, beforeAll, expect } from "vitest";
 import type { Layout } from "#core/layout/schema.ts";
+import { startService, type Service } from "../../support/service.ts";
 
 const ARTIFACTS = new URL("../../../.artifacts/journeys/", import.meta.url).pathname;
 
+/** A service with the built pages and a browser for all of a test file's visits; both end with it. */
+export function journey(): { readonly service: Service; readonly browser: Browser } {
+  const running = {} as { service: Service; browser: Browser };
+  beforeAll(async () => {
+    running.service = await startService({ site: true });
+    running.browser = await openBrowser();
+  }, 120_000);
+  afterAll(async () => {
+    await running.browser.close();
+    await running.service.close();
+  });
+  return running;
+}
+
 /** Debian's Chromium, without a window. */
-export function openBrowser(): Promise<Browser> {
+function openBrowser(): Promise<Browser> {
   const executablePath = execFileSync("sh", ["-c", "command -v chromium"], { encoding: "utf8" }).trim();
   return chromium.launch({ executablePath, args: ["--no-sandbox", "--disable-dev-shm-usage"] });
 }

@@ -23,7 +23,7 @@ const sheet = async (query: string): Promise<ReadPdf> => {
   return readPdf(answer.body as Buffer);
 };
 
-/** ISO 216 trimmed sizes and ANSI/ASME Y14.1 (Letter 8.5 x 11 in, Tabloid 11 x 17 in), laid on their long side. */
+/** ISO 216 trimmed sizes and ANSI/ASME Y14.1 (Letter 8.5 x 11 in, Tabloid 11 x 17 in), from memory, laid on their long side. */
 const SIZES = { A4: [297, 210], A3: [420, 297], A2: [594, 420], A1: [841, 594], Letter: [279.4, 215.9], Tabloid: [431.8, 279.4] } as const;
 const papers = Object.keys(SIZES) as (keyof typeof SIZES)[];
 
@@ -99,7 +99,7 @@ describe("the sheet as poppler reads it", () => {
 
   it("speaks inches where they are asked for", async () => {
     const read = await sheet("paper=A3&units=in-fraction");
-    // 2460 mm = 96 27/32 in, to 1/16: 96 7/8
+    // 2460 mm = 96.850 in, to 1/16: 96 14/16 = 96 7/8
     expect(read.text).toContain("96 7/8");
     const decimal = await sheet("paper=A3&units=in");
     // 2460 / 25.4 = 96.850...

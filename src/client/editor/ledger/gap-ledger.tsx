@@ -64,11 +64,15 @@ export function GapLedger({ view, setView }: { view: LedgerView; setView: (view:
 
   const key = (event: KeyboardEvent) => {
     const page = Math.max(1, Math.floor((scroll.current?.clientHeight ?? 200) / ROW) - 1);
-    const steps: Record<string, number> = { ArrowDown: 1, ArrowUp: -1, PageDown: page, PageUp: -page, Home: -rows.length, End: rows.length };
-    const step = steps[event.key];
-    if (step !== undefined) {
+    const last = rows.length - 1;
+    // where nothing is chosen, down begins at the first row and up at the last
+    const targets: Record<string, number> = at < 0
+      ? { ArrowDown: 0, PageDown: 0, Home: 0, ArrowUp: last, PageUp: last, End: last }
+      : { ArrowDown: at + 1, PageDown: at + page, Home: 0, ArrowUp: at - 1, PageUp: at - page, End: last };
+    const target = targets[event.key];
+    if (target !== undefined) {
       event.preventDefault();
-      const next = event.key === "Home" || at < 0 ? (event.key === "Home" || step > 0 ? 0 : rows.length - 1) : Math.max(0, Math.min(rows.length - 1, at + step));
+      const next = Math.max(0, Math.min(last, target));
       choose(rows[next]);
       if (rows[next]) virtual.scrollToIndex(next, { align: "auto" });
     } else if (event.key === "Enter" && rows[at]) {

@@ -29,7 +29,7 @@ export function NewPartCard() {
   const place = () => {
     const key = freeKey(document, name);
     try {
-      const made = partSchema.parse({ key, name, kind, solids: [solid], at: [0, 0, 0], source: { how, plusMinus: 0 } });
+      const made = partOf(solid, key, name, kind, how);
       const faces = facesOf(made);
       const at = [front - faces.low[0], middle - (faces.low[1] + faces.high[1]) / 2, lowest - faces.low[2]];
       const part = partSchema.parse({ ...made, at });
@@ -69,10 +69,13 @@ export function NewPartCard() {
   );
 }
 
+/** A part of one solid at the origin. */
+const partOf = (solid: Solid, key: string, name: string, kind: PartKind, how: Part["source"]["how"]): Part => partSchema.parse({ key, name, kind, solids: [solid], at: [0, 0, 0], source: { how, plusMinus: 0 } });
+
 /** Why a shape cannot be: an outline that crosses itself, outlines with nothing in common. Said at its field, before it is placed. */
 function faultOf(solid: Solid): string | null {
   try {
-    facesOf(partSchema.parse({ key: "part", name: "part", kind: "other", solids: [solid], at: [0, 0, 0], source: { how: "measured", plusMinus: 0 } }));
+    facesOf(partOf(solid, "part", "part", "other", "measured"));
     return null;
   } catch (error) {
     return error instanceof Error ? error.message : String(error);
